@@ -1,0 +1,29 @@
+import { defineConfig } from 'vitest/config';
+
+/** Time zone and locale are fixed so that a test reads the same on every machine. */
+const env = { TZ: 'UTC', LANG: 'en_GB.UTF-8' };
+
+export default defineConfig({
+  test: {
+    projects: [
+      { test: { name: 'unit', include: ['tests/unit/**/*.test.ts'], environment: 'node', env } },
+      { test: { name: 'outside', include: ['tests/outside/**/*.test.ts'], environment: 'node', env } },
+      {
+        esbuild: { jsx: 'automatic' },
+        test: { name: 'component', include: ['tests/component/**/*.test.tsx'], environment: 'jsdom', env },
+      },
+      {
+        test: {
+          name: 'service',
+          include: ['tests/service/**/*.test.ts'],
+          environment: 'node',
+          env,
+          globalSetup: ['tests/service/global-setup.ts'],
+          testTimeout: 30_000,
+          hookTimeout: 60_000,
+          maxWorkers: 2,
+        },
+      },
+    ],
+  },
+});
