@@ -101,7 +101,8 @@ export const up: Migration = async ({ sql }) => {
       paid_at timestamptz,
       updated_at timestamptz not null default now(),
       unique (user_id, request_key),
-      check (total_minor = subtotal_minor - discount_minor + tax_minor),
+      -- Prices include the tax, as a person buying must be told: it is a part of the total and not on top.
+      check (total_minor = subtotal_minor - discount_minor and tax_minor <= total_minor),
       check ((state in ('paid', 'partly_refunded', 'refunded')) = (paid_at is not null))
     );
     create index orders_user on orders (user_id, created_at desc, id);
