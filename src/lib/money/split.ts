@@ -74,7 +74,8 @@ export function splitSale(line: PaidLine): LedgerSplit {
     throw new RangeError('a share is 0 to 1000 thousandths');
   const left = Math.max(0, totalMinor - taxMinor - feeMinor);
   const imprint = Math.floor((left * sharePermille) / 1000);
-  const house = totalMinor - taxMinor - feeMinor - imprint;
+  // The house's income is counted before the fee, which stands as a cost of its own.
+  const house = totalMinor - taxMinor - imprint;
   return {
     clearingMinor: totalMinor - feeMinor,
     feesMinor: feeMinor,
