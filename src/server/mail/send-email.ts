@@ -3,7 +3,8 @@ import { QueryTypes } from 'sequelize';
 import { sequelize } from '#db/client.ts';
 import { env } from '../env.ts';
 
-const transport = nodemailer.createTransport(env.SMTP_URL, {
+const transport = nodemailer.createTransport({
+  url: env.SMTP_URL,
   connectionTimeout: 10_000,
   greetingTimeout: 10_000,
   socketTimeout: 20_000,

@@ -1,0 +1,88 @@
+import { Copy, Imprint, Licence, Plan, Revision, SavedFit } from '#db/models/index.ts';
+import type { CompiledPlan } from '#lib/plan/types.ts';
+import type { Actor } from '../accounts/actor.ts';
+import { may } from '../accounts/may.ts';
+import { refuse } from '../errors.ts';
+import { viewCopy, type CopyView } from '../copies/view-copy.ts';
+import { getCompiledPlan } from '../publishing/get-compiled-plan.ts';
+import { viewFit, type SavedFitView } from './save-fit.ts';
+
+/** Everything that the page of one licence shows. The whole plan is in it: only its holder gets this. */
+export interface LicencePage {
+  licence: {
+    id: string;
+    number: number;
+    kind: 'personal' | 'workshop';
+    pieces: number | null;
+    state: 'active' | 'refunded' | 'revoked';
+    holderName: string;
+    grantedAt: string;
+  };
+  plan: { id: string; slug: string; title: string; imprintName: string };
+  revision: { id: string; letter: string; publishedAt: string; notes: string };
+  /** Null when the licence has ended: nothing of the plan is handed out any more. */
+  compiled: CompiledPlan | null;
+  fits: SavedFitView[];
+  copies: CopyView[];
+}
+
+/**
+ * A licence and what belongs to it, for its holder.
+ * @throws SIGN_IN_REQUIRED, NOT_FOUND for another's licence
+ */
+export async function getLicence(actor: Actor, licenceId: string): Promise<LicencePage> {
+  if (actor.kind === 'visitor') return refuse('SIGN_IN_REQUIRED');
+  const licence = await Licence.findOne({
+    where: { id: licenceId, userId: actor.id },
+    include: [
+      {
+        model: Plan,
+        as: 'plan',
+        include: [
+          { model: Imprint, as: 'imprint' },
+          { model: Revision, as: 'currentRevision', attributes: ['id', 'letter', 'publishedAt', 'notes'] },
+        ],
+      },
+    ],
+  });
+  const plan = licence?.plan;
+  const revision = plan?.currentRevision;
+  if (!licence || !plan || !revision?.letter || !revision.publishedAt) return refuse('NOT_FOUND');
+  const isUsable = may(actor, 'licence:use', {
+    kind: 'licence',
+    userId: licence.userId,
+    state: licence.state,
+  });
+  const fits = await SavedFit.findAll({
+    where: { userId: actor.id, planId: plan.id },
+    order: [['updatedAt', 'DESC']],
+    limit: 50,
+  });
+  const copies = await Copy.findAll({
+    where: { licenceId: licence.id },
+    include: [{ model: Revision, as: 'revision', attributes: ['letter', 'publishedAt'] }],
+    order: [['number', 'DESC']],
+    limit: 100,
+  });
+  return {
+    licence: {
+      id: licence.id,
+      number: licence.number,
+      kind: licence.kind,
+      pieces: licence.pieces,
+      state: licence.state,
+      holderName: licence.holderName,
+      grantedAt: licence.grantedAt.toISOString(),
+    },
+    plan: { id: plan.id, slug: plan.slug, title: plan.title, imprintName: plan.imprint?.name ?? '' },
+    revision: {
+      id: revision.id,
+      letter: revision.letter,
+      publishedAt: revision.publishedAt.toISOString(),
+      notes: revision.notes,
+    },
+    compiled: isUsable ? await getCompiledPlan(revision.id) : null,
+    fits: fits.map(viewFit),
+    copies: copies.map((copy) => viewCopy(copy)),
+  };
+}
