@@ -1,4 +1,9 @@
-import { createAdapterFactory, type CleanedWhere, type JoinConfig } from 'better-auth/adapters';
+import {
+  createAdapterFactory,
+  type CleanedWhere,
+  type DBAdapter,
+  type JoinConfig,
+} from 'better-auth/adapters';
 import type { BetterAuthOptions } from 'better-auth';
 import {
   Op,
@@ -127,7 +132,7 @@ function toPlain(row: Model, joins: readonly ReadJoin[] = []): Row {
  * Its own published test suite runs over it in tests/service/auth-adapter.test.ts.
  */
 export function sequelizeAdapter({ sequelize, findModel }: SequelizeAdapterConfig) {
-  const build = (options: BetterAuthOptions, outer: Transaction | null) =>
+  const build = (options: BetterAuthOptions, outer: Transaction | null): DBAdapter =>
     createAdapterFactory({
       config: {
         adapterId: 'sequelize',

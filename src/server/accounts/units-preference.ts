@@ -1,0 +1,18 @@
+import type { AstroCookies } from 'astro';
+import type { UnitSystem } from '#lib/plan/types.ts';
+import type { Actor } from './actor.ts';
+
+/** Remembers the units that a browser chose; no secret, and readable by the page. */
+export const UNITS_COOKIE = 'benchleaf_units';
+
+/**
+ * The units to show: what this browser chose last, else what the account says, else what its language suggests
+ * (American English reads inches, everybody else millimetres).
+ */
+export function readUnits(actor: Actor, cookies: AstroCookies, headers: Headers): UnitSystem {
+  const chosen = cookies.get(UNITS_COOKIE)?.value;
+  if (chosen === 'mm' || chosen === 'in') return chosen;
+  if (actor.kind === 'user') return actor.units;
+  const first = headers.get('accept-language')?.split(',')[0]?.split(';')[0]?.trim().toLowerCase();
+  return first === 'en-us' ? 'in' : 'mm';
+}
