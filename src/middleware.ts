@@ -1,0 +1,32 @@
+import { randomUUID } from 'node:crypto';
+import { defineMiddleware } from 'astro:middleware';
+import { findActor, VISITOR } from '#server/accounts/actor.ts';
+import { readUnits } from '#server/accounts/units-preference.ts';
+
+/** A request id that the front made; anything else is not believed. */
+const REQUEST_ID = /^[A-Za-z0-9-]{8,64}$/;
+
+/**
+ * Settles who is asking and in which units, for every page and endpoint made on demand.
+ * What they may do is decided where the thing is known, never here and never by path.
+ */
+export const onRequest = defineMiddleware(async ({ isPrerendered, locals, request, cookies }, next) => {
+  const stated = request.headers.get('x-benchleaf-request') ?? '';
+  locals.requestId = REQUEST_ID.test(stated) ? stated : randomUUID();
+  // A page made at build time has no reader, and its request no headers.
+  locals.actor = isPrerendered ? VISITOR : await findActor(request.headers);
+  locals.units = isPrerendered ? 'mm' : readUnits(locals.actor, cookies, request.headers);
+
+  const response = await next();
+  if (isPrerendered) return response;
+  response.headers.set('x-request-id', locals.requestId);
+  if (locals.actor.kind === 'user') {
+    // A signed-in person's page is kept by nobody, not even by the browser's history.
+    response.headers.set('cache-control', 'private, no-store');
+  } else if (!response.headers.has('cache-control')) {
+    // The same address shows another page to somebody else, and other units.
+    response.headers.set('cache-control', 'private, no-cache');
+  }
+  response.headers.append('vary', 'cookie, accept-language');
+  return response;
+});
