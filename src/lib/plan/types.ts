@@ -6,6 +6,8 @@
  * (both as plain numbers, exact to 2^53 and rounded beyond), masses kilograms.
  */
 
+import type { UnitSystem } from '#lib/units/length.ts';
+
 /** What a value is. `list` holds the kind of its members; `any` stands only in an empty list. */
 export type Kind =
   | 'length'
@@ -324,7 +326,7 @@ export interface CompiledPlan {
   body: Prose;
 }
 
-export type UnitSystem = 'mm' | 'in';
+export type { UnitSystem };
 
 /** What a buyer sets: all optional, the plan's defaults fill in. */
 export interface Fit {

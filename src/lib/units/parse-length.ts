@@ -36,7 +36,7 @@ const VULGAR_FRACTIONS: ReadonlyMap<string, readonly [number, number]> = new Map
 ]);
 
 type Token =
-  | { type: 'number'; digits: string; decimals: number; gap: boolean }
+  | { type: 'number'; digits: string; decimals: number }
   | { type: 'vulgar'; over: readonly [number, number] }
   | { type: 'slash' | 'dash' | 'comma' }
   | { type: 'unit'; unit: LengthUnit }
@@ -70,11 +70,9 @@ function isMark(char: string): boolean {
 function tokenize(text: string): Token[] {
   const tokens: Token[] = [];
   let i = 0;
-  let gap = false;
   while (i < text.length) {
     const char = text.charAt(i);
     if (isSpace(char)) {
-      gap = true;
       i += 1;
       continue;
     }
@@ -89,7 +87,7 @@ function tokenize(text: string): Token[] {
         decimals = i - from;
         digits += text.slice(from, i);
       }
-      tokens.push({ type: 'number', digits, decimals, gap });
+      tokens.push({ type: 'number', digits, decimals });
     } else if (VULGAR_FRACTIONS.has(char)) {
       tokens.push({ type: 'vulgar', over: VULGAR_FRACTIONS.get(char) ?? [0, 1] });
       i += 1;
@@ -121,7 +119,6 @@ function tokenize(text: string): Token[] {
         tokens.push({ type: 'unit', unit });
       }
     }
-    gap = false;
   }
   return tokens;
 }
