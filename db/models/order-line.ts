@@ -28,6 +28,8 @@ export class OrderLine extends Model<InferAttributes<OrderLine>, InferCreationAt
   declare priceMinor: number;
   declare discountMinor: CreationOptional<number>;
   declare taxMinor: CreationOptional<number>;
+  declare feeMinor: CreationOptional<number>;
+  declare sharePermille: CreationOptional<number>;
   declare refundedMinor: CreationOptional<number>;
 
   declare savedFit?: NonAttribute<SavedFit | null>;
@@ -52,6 +54,8 @@ OrderLine.init(
     priceMinor: { type: DataTypes.INTEGER, allowNull: false },
     discountMinor: { type: DataTypes.INTEGER },
     taxMinor: { type: DataTypes.INTEGER },
+    feeMinor: { type: DataTypes.INTEGER },
+    sharePermille: { type: DataTypes.INTEGER },
     refundedMinor: { type: DataTypes.INTEGER },
   },
   { sequelize, tableName: 'order_lines' },

@@ -7,6 +7,7 @@ import {
   type NonAttribute,
 } from 'sequelize';
 import { sequelize } from '#db/client.ts';
+import type { ProofRecord } from '#lib/plan/proof-record.ts';
 import type { CompiledPlan } from '#lib/plan/types.ts';
 import type { Asset } from './asset.ts';
 import type { Copy } from './copy.ts';
@@ -22,7 +23,7 @@ export class Revision extends Model<InferAttributes<Revision>, InferCreationAttr
   declare state: CreationOptional<'draft' | 'published' | 'superseded'>;
   declare source: CreationOptional<string>;
   declare compiled: CreationOptional<CompiledPlan | null>;
-  declare proof: CreationOptional<unknown>;
+  declare proof: CreationOptional<ProofRecord | null>;
   declare notes: CreationOptional<string>;
   declare version: CreationOptional<number>;
   declare createdBy: CreationOptional<string | null>;

@@ -26,12 +26,9 @@ export async function refundOrder(request: RefundRequest): Promise<void> {
     include: [{ model: OrderLine, as: 'lines', include: [{ model: Plan, as: 'plan' }] }],
   });
   const imprintIds = [...new Set((order?.lines ?? []).map((line) => line.plan?.imprintId ?? ''))];
-  requireMay(
-    request.actor,
-    'order:refund',
-    order ? { kind: 'order', userId: order.userId, imprintIds } : null,
-  );
-  if (!order?.paymentIntentId) return refuse('BAD_INPUT', { detail: 'Nothing was paid for this order.' });
+  if (!order) return refuse('NOT_FOUND');
+  requireMay(request.actor, 'order:refund', { imprintIds });
+  if (!order.paymentIntentId) return refuse('BAD_INPUT', { detail: 'Nothing was paid for this order.' });
   const left = order.totalMinor - order.refundedMinor;
   const amount = request.amountMinor ?? left;
   if (amount <= 0 || amount > left) {

@@ -3,7 +3,8 @@ import { UniqueConstraintError } from 'sequelize';
 import { sequelize } from '#db/client.ts';
 import { Imprint, Licence, LicenceOffer, Order, OrderLine, Plan, Source } from '#db/models/index.ts';
 import { paths } from '#lib/paths.ts';
-import type { Actor } from '../accounts/actor.ts';
+import type { Actor, SignedInUser } from '../accounts/actor.ts';
+import { requireMay, requireUser } from '../accounts/may.ts';
 import { env } from '../env.ts';
 import { refuse } from '../errors.ts';
 import { log } from '../log.ts';
@@ -38,8 +39,7 @@ export interface CheckoutRequest {
  * @throws SIGN_IN_REQUIRED, NOT_FOR_SALE, ALREADY_OWNED, CODE_REFUSED, PAYMENT_UNAVAILABLE, BAD_INPUT without consent
  */
 export async function startCheckout(request: CheckoutRequest): Promise<{ orderId: string; url: string }> {
-  const { actor } = request;
-  if (actor.kind === 'visitor') return refuse('SIGN_IN_REQUIRED');
+  const actor = requireUser(request.actor);
   if (!request.hasConsented) {
     refuse('BAD_INPUT', { fields: { consent: 'Confirm this to go on: the licence begins at once.' } });
   }
@@ -49,9 +49,7 @@ export async function startCheckout(request: CheckoutRequest): Promise<{ orderId
   return { orderId: order.id, url: await openPaymentPage(order) };
 }
 
-type Member = Extract<Actor, { kind: 'user' }>;
-
-async function findOrMakeOrder(request: CheckoutRequest, actor: Member): Promise<Order> {
+async function findOrMakeOrder(request: CheckoutRequest, actor: SignedInUser): Promise<Order> {
   const where = { userId: actor.id, requestKey: request.requestKey };
   const existing = await Order.findOne({ where });
   if (existing) return existing;
@@ -66,7 +64,7 @@ async function findOrMakeOrder(request: CheckoutRequest, actor: Member): Promise
   }
 }
 
-async function makeOrder(request: CheckoutRequest, actor: Member): Promise<Order> {
+async function makeOrder(request: CheckoutRequest, actor: SignedInUser): Promise<Order> {
   return sequelize.transaction(async (transaction) => {
     const offer = await LicenceOffer.findByPk(request.offerId, { transaction });
     const plan = offer && (await Plan.findByPk(offer.planId, { transaction }));
@@ -79,6 +77,7 @@ async function makeOrder(request: CheckoutRequest, actor: Member): Promise<Order
     ) {
       return refuse('NOT_FOR_SALE');
     }
+    requireMay(actor, 'checkout:start', { planId: plan.id, imprintId: imprint.id, state: plan.state });
     const owned = await Licence.count({
       where: { userId: actor.id, planId: plan.id, kind: offer.kind, state: 'active' },
       transaction,

@@ -18,16 +18,12 @@ async function findOwn(copyId: string): Promise<Copy | null> {
   });
 }
 
-const thingOf = (copy: Copy | null) =>
-  copy?.licence
-    ? ({ kind: 'licence', userId: copy.licence.userId, state: copy.licence.state } as const)
-    : null;
-
 /** How far a copy is. @throws NOT_FOUND for another's copy */
 export async function readCopy(actor: Actor, copyId: string): Promise<CopyView> {
   const copy = await findOwn(copyId);
-  requireMay(actor, 'copy:read', thingOf(copy));
-  return copy ? viewCopy(copy) : refuse('NOT_FOUND');
+  if (!copy?.licence) return refuse('NOT_FOUND');
+  requireMay(actor, 'licence:read', copy.licence);
+  return viewCopy(copy);
 }
 
 /**
@@ -36,9 +32,9 @@ export async function readCopy(actor: Actor, copyId: string): Promise<CopyView> 
  */
 export async function downloadCopy(actor: Actor, copyId: string): Promise<string> {
   const copy = await findOwn(copyId);
-  requireMay(actor, 'copy:download', thingOf(copy));
-  if (!copy) return refuse('NOT_FOUND');
+  if (!copy?.licence) return refuse('NOT_FOUND');
+  requireMay(actor, 'copy:download', { licence: copy.licence });
   if (copy.state !== 'ready' || !copy.objectKey) return refuse('COPY_NOT_READY');
-  const name = `${copy.licence?.plan?.slug ?? 'plan'}-${copy.revision?.letter ?? ''}-copy-${copy.number}.pdf`;
+  const name = `${copy.licence.plan?.slug ?? 'plan'}-${copy.revision?.letter ?? ''}-copy-${copy.number}.pdf`;
   return presignDownload(copy.objectKey, name, 'application/pdf');
 }

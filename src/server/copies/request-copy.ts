@@ -31,13 +31,10 @@ export async function requestCopy({
   paper,
 }: CopyRequest): Promise<CopyView> {
   const licence = await Licence.findByPk(licenceId, { include: [{ model: Plan, as: 'plan' }] });
-  requireMay(
-    actor,
-    'licence:use',
-    licence ? { kind: 'licence', userId: licence.userId, state: licence.state } : null,
-  );
-  const revisionId = licence?.plan?.currentRevisionId;
-  if (!licence || !revisionId) return refuse('NOT_FOUND');
+  if (!licence) return refuse('NOT_FOUND');
+  requireMay(actor, 'licence:use', licence);
+  const revisionId = licence.plan?.currentRevisionId;
+  if (!revisionId) return refuse('NOT_FOUND');
   const fit = await requireFit(revisionId, input);
   requireBuildable(resolvePlan(await getCompiledPlan(revisionId), fit));
   const ownFit =

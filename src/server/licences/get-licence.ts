@@ -48,11 +48,7 @@ export async function getLicence(actor: Actor, licenceId: string): Promise<Licen
   const plan = licence?.plan;
   const revision = plan?.currentRevision;
   if (!licence || !plan || !revision?.letter || !revision.publishedAt) return refuse('NOT_FOUND');
-  const isUsable = may(actor, 'licence:use', {
-    kind: 'licence',
-    userId: licence.userId,
-    state: licence.state,
-  });
+  const isUsable = may(actor, 'licence:use', licence);
   const fits = await SavedFit.findAll({
     where: { userId: actor.id, planId: plan.id },
     order: [['updatedAt', 'DESC']],

@@ -16,7 +16,7 @@ export async function createPlan(options: {
   title: string;
 }): Promise<{ planId: string }> {
   const { actor, imprintId } = options;
-  requireMay(actor, 'draft:write', { kind: 'plan', planId: null, imprintId, isPublished: false });
+  requireMay(actor, 'plan:create', { imprintId });
   const title = options.title.trim();
   const slug = slugOf(title);
   return sequelize.transaction(async (transaction) => {

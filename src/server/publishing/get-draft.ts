@@ -13,7 +13,7 @@ import {
 import type { Actor } from '../accounts/actor.ts';
 import { requireMay } from '../accounts/may.ts';
 import { refuse } from '../errors.ts';
-import type { ProofRecord } from './proof-record.ts';
+import type { ProofRecord } from '#lib/plan/proof-record.ts';
 
 export interface AssetView {
   name: string;
@@ -67,14 +67,9 @@ export function letterAfter(letter: string | null): string {
 /** Finds a plan and checks the right to write it. @throws NOT_FOUND, FORBIDDEN */
 export async function requireDraftPlan(actor: Actor, planId: string): Promise<Plan> {
   const plan = await Plan.findByPk(planId);
-  requireMay(
-    actor,
-    'draft:write',
-    plan
-      ? { kind: 'plan', planId: plan.id, imprintId: plan.imprintId, isPublished: plan.state === 'published' }
-      : null,
-  );
-  return plan ?? refuse('NOT_FOUND');
+  if (!plan) return refuse('NOT_FOUND');
+  requireMay(actor, 'draft:write', { imprintId: plan.imprintId });
+  return plan;
 }
 
 /** The plan as it lies on the board. @throws NOT_FOUND, FORBIDDEN */

@@ -5,7 +5,8 @@ import type { Actor } from '../accounts/actor.ts';
 import { refuse } from '../errors.ts';
 import { enqueue } from '../jobs/enqueue.ts';
 import { requireDraftPlan } from './get-draft.ts';
-import { hashSource, type ProofRecord } from './proof-record.ts';
+import type { ProofRecord } from '#lib/plan/proof-record.ts';
+import { hashSource } from './hash-source.ts';
 
 const emptyProof = (source: string, state: ProofRecord['state']): ProofRecord => ({
   state,

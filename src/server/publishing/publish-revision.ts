@@ -8,7 +8,8 @@ import { writeAudit } from '../audit/write-audit.ts';
 import { refuse } from '../errors.ts';
 import { enqueue } from '../jobs/enqueue.ts';
 import { letterAfter, requireDraftPlan } from './get-draft.ts';
-import { hashSource, type ProofRecord } from './proof-record.ts';
+import type { ProofRecord } from '#lib/plan/proof-record.ts';
+import { hashSource } from './hash-source.ts';
 import { publicPictures, publicStory, storyText } from './public-story.ts';
 
 /** One thing that must be in order before a plan is published, and whether it is. */
@@ -116,12 +117,7 @@ export async function publishRevision(options: {
 }): Promise<{ letter: string }> {
   const { actor, planId } = options;
   const plan = await requireDraftPlan(actor, planId);
-  requireMay(actor, 'plan:publish', {
-    kind: 'plan',
-    planId: plan.id,
-    imprintId: plan.imprintId,
-    isPublished: plan.state === 'published',
-  });
+  requireMay(actor, 'plan:publish', { imprintId: plan.imprintId });
   return sequelize.transaction(async (transaction) => {
     // One publication of a plan at a time: the second waits here and then finds no draft.
     await Plan.findByPk(planId, { transaction, lock: transaction.LOCK.UPDATE });
@@ -188,13 +184,8 @@ export async function publishRevision(options: {
 /** Takes a plan out of the plan chest; licences stay good. @throws NOT_FOUND, FORBIDDEN */
 export async function unpublishPlan(actor: Actor, planId: string): Promise<void> {
   const plan = await Plan.findByPk(planId);
-  requireMay(
-    actor,
-    'plan:unpublish',
-    plan
-      ? { kind: 'plan', planId: plan.id, imprintId: plan.imprintId, isPublished: plan.state === 'published' }
-      : null,
-  );
-  await plan?.update({ state: 'unpublished' });
+  if (!plan) return refuse('NOT_FOUND');
+  requireMay(actor, 'plan:unpublish', { imprintId: plan.imprintId });
+  await plan.update({ state: 'unpublished' });
   await writeAudit({ actor, action: 'plan:unpublish', thing: { kind: 'plan', id: planId } });
 }

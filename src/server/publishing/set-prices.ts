@@ -25,12 +25,7 @@ export async function setPrices(options: {
   prices: PriceToSet[];
 }): Promise<void> {
   const plan = await requireDraftPlan(options.actor, options.planId);
-  requireMay(options.actor, 'plan:price', {
-    kind: 'plan',
-    planId: plan.id,
-    imprintId: plan.imprintId,
-    isPublished: plan.state === 'published',
-  });
+  requireMay(options.actor, 'plan:price', { imprintId: plan.imprintId });
   for (const { priceMinor, currency, kind } of options.prices) {
     const least = 10 ** minorDigits(currency) * (currency === 'JPY' ? 100 : 1);
     if (priceMinor !== 0 && priceMinor < least) {

@@ -18,9 +18,7 @@ const LONGEST_SIDE = 2400;
 const NAME = /^[A-Za-z0-9][A-Za-z0-9._-]{0,119}$/;
 
 /** Decodes and encodes anew: what is stored is only the picture, without places, profiles or anything hidden behind it. */
-async function clean(
-  bytes: Uint8Array,
-): Promise<{
+async function clean(bytes: Uint8Array): Promise<{
   bytes: Uint8Array;
   type: 'image/jpeg' | 'image/png' | 'image/webp';
   width: number;
