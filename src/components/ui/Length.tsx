@@ -23,11 +23,14 @@ export function Length({ length, isBare = false }: LengthProps) {
           </span>
         ) : (
           <span className={length.units === 'mm' ? 'length__decimals' : 'length__no-fraction'}>
+            {drawn.decimals === '' ? null : <span className="point">.</span>}
             {drawn.decimals}
           </span>
         )}
         <span className="length__mark">{drawn.mark}</span>
-        {isBare ? null : <span className="length__unit">{drawn.unit}</span>}
+        {isBare || drawn.unit === '' ? null : (
+          <span className={`length__unit length__unit--${length.units}`}>{drawn.unit}</span>
+        )}
       </span>
     </span>
   );

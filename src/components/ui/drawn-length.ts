@@ -7,11 +7,11 @@ export interface DrawnLength {
   /** Minus sign and feet, then the whole number; empty for a bare fraction such as 3/4. */
   lead: string;
   fraction: { over: number; under: number } | null;
-  /** Decimals with their point, in millimetres. */
+  /** The digits behind the point, in millimetres. */
   decimals: string;
   /** `+` or `−` where the reading alone would mislead. */
   mark: string;
-  /** The unit behind the figure: ` mm`, or the inch mark. */
+  /** The unit behind the figure: `mm`, or the inch mark. */
   unit: string;
 }
 
@@ -21,7 +21,7 @@ export function drawLength(length: FormattedLength): DrawnLength {
   const feet = length.feet === undefined ? '' : `${String(length.feet)}′ `;
   const hasFraction = length.numerator !== 0;
   if (length.units === 'mm') {
-    const tenths = hasFraction ? `.${String(Math.round((length.numerator / length.denominator) * 10))}` : '';
+    const tenths = hasFraction ? String(Math.round((length.numerator / length.denominator) * 10)) : '';
     return {
       plain: length.text,
       lead: `${sign}${String(length.whole)}`,
