@@ -4,6 +4,7 @@ import { may } from '../accounts/may.ts';
 import { findObject } from '../storage/object-store.ts';
 
 export interface Picture {
+  sha256: string;
   bytes: Uint8Array;
   contentType: string;
   /** Public pictures may be kept by anybody; others only by the reader's own browser. */
@@ -44,7 +45,7 @@ export async function findPicture(actor: Actor, sha256: string): Promise<Picture
   const shown = open ?? (await findReadable(actor, assets));
   if (!shown) return null;
   const bytes = await findObject(shown.objectKey);
-  return bytes && { bytes, contentType: shown.contentType, isPublic: open !== undefined };
+  return bytes && { sha256, bytes, contentType: shown.contentType, isPublic: open !== undefined };
 }
 
 async function findReadable(actor: Actor, assets: readonly Asset[]): Promise<Asset | null> {

@@ -4,6 +4,7 @@ import type { Actor } from '../accounts/actor.ts';
 import { AppError } from '../errors.ts';
 import { rememberForm } from './form-memory.ts';
 import { problemResponse, toRefusal } from './problem.ts';
+import { readQuery } from './read-query.ts';
 
 /** What a use case gets from the edge: who asks, the checked input, the path's parameters. */
 export interface Asked<Input> {
@@ -26,13 +27,6 @@ async function readJson(request: Request): Promise<unknown> {
   } catch (cause) {
     throw new AppError('BAD_INPUT', { detail: 'The body is not JSON.', cause });
   }
-}
-
-/** Query parameters as an object; of a repeated one the first counts. */
-export function readQuery(url: URL): Record<string, string> {
-  const query: Record<string, string> = Object.create(null) as Record<string, string>;
-  for (const [key, value] of url.searchParams) query[key] ??= value;
-  return { ...query };
 }
 
 /**
