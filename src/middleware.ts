@@ -1,7 +1,7 @@
 import { randomUUID } from 'node:crypto';
 import { defineMiddleware } from 'astro:middleware';
 import { findActor, VISITOR } from '#server/accounts/actor.ts';
-import { readUnits } from '#server/accounts/units-preference.ts';
+import { readAskedUnits, readUnits, rememberUnits } from '#server/accounts/units-preference.ts';
 
 /** A request id that the front made; anything else is not believed. */
 const REQUEST_ID = /^[A-Za-z0-9-]{8,64}$/;
@@ -10,12 +10,15 @@ const REQUEST_ID = /^[A-Za-z0-9-]{8,64}$/;
  * Settles who is asking and in which units, for every page and endpoint made on demand.
  * What they may do is decided where the thing is known, never here and never by path.
  */
-export const onRequest = defineMiddleware(async ({ isPrerendered, locals, request, cookies }, next) => {
+export const onRequest = defineMiddleware(async ({ isPrerendered, locals, request, cookies, url }, next) => {
   const stated = request.headers.get('x-benchleaf-request') ?? '';
   locals.requestId = REQUEST_ID.test(stated) ? stated : randomUUID();
   // A page made at build time has no reader, and its request no headers.
   locals.actor = isPrerendered ? VISITOR : await findActor(request.headers);
-  locals.units = isPrerendered ? 'mm' : readUnits(locals.actor, cookies, request.headers);
+  // The title block switches units by a link to the same page, which the browser then keeps to.
+  const asked = isPrerendered ? undefined : readAskedUnits(url);
+  locals.units = asked ?? (isPrerendered ? 'mm' : readUnits(locals.actor, cookies, request.headers));
+  if (asked) rememberUnits(cookies, asked);
 
   const response = await next();
   if (isPrerendered) return response;

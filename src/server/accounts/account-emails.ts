@@ -1,4 +1,5 @@
 import { createHash } from 'node:crypto';
+import type { Transaction } from 'sequelize';
 import { env } from '../env.ts';
 import { writeEmail } from '../mail/write-email.ts';
 
@@ -14,8 +15,12 @@ const digest = (token: string) => createHash('sha256').update(token).digest('hex
 const to = ({ name, email }: Addressee) => ({ name, address: email });
 
 /** The link that confirms an address: a new account's, or the one that an account moves to. Valid for a day. */
-export function writeVerificationEmail(user: Addressee, token: string): Promise<void> {
-  return writeEmail({
+export function writeVerificationEmail(
+  user: Addressee,
+  token: string,
+  transaction?: Transaction,
+): Promise<void> {
+  const email = {
     kind: 'verify-email',
     reference: `verify-email:${digest(token)}`,
     to: to(user),
@@ -25,7 +30,8 @@ export function writeVerificationEmail(user: Addressee, token: string): Promise<
       'If it was not you who gave it, do nothing: without your confirmation nobody can sign in with this address.',
     ],
     action: { label: 'Confirm this address', url: link('/verify-email', token) },
-  });
+  };
+  return writeEmail(email, transaction);
 }
 
 /** The link to set a new password. Valid for an hour and used up by the first use. */
@@ -59,8 +65,8 @@ export function tellOfExistingAccount(user: Addressee): Promise<void> {
 }
 
 /** Tells the old address that the account is about to move to another one, while that can still be stopped. */
-export function tellOldAddress(user: Addressee, newEmail: string): Promise<void> {
-  return writeEmail({
+export function tellOldAddress(user: Addressee, newEmail: string, transaction: Transaction): Promise<void> {
+  const email = {
     kind: 'email-change',
     reference: `email-change:${user.id}:${digest(newEmail)}:${new Date().toISOString().slice(0, 16)}`,
     to: to(user),
@@ -70,7 +76,23 @@ export function tellOldAddress(user: Addressee, newEmail: string): Promise<void>
       'If it was not you, set a new password now: that signs everybody out and stops the move.',
     ],
     action: { label: 'Set a new password', url: `${env.SITE_URL}/forgot-password` },
-  });
+  };
+  return writeEmail(email, transaction);
+}
+
+/** Tells the old address that the account has moved. */
+export function tellOldAddressOfMove(user: Addressee, transaction: Transaction): Promise<void> {
+  const email = {
+    kind: 'email-changed',
+    reference: `email-changed:${user.id}:${new Date().toISOString()}`,
+    to: to(user),
+    subject: 'Your account has moved to another e-mail address',
+    paragraphs: [
+      'Your account at Benchleaf has moved to another e-mail address, which was confirmed just now. This one no longer signs in.',
+      'If it was not you, write to us by answering this mail.',
+    ],
+  };
+  return writeEmail(email, transaction);
 }
 
 /** Tells a person that the password of the account was changed. */

@@ -4,8 +4,14 @@ import { sequelize } from '#db/client.ts';
 import { Account, RateLimit, Session, User, Verification } from '#db/models/index.ts';
 import { env } from '../env.ts';
 import { log } from '../log.ts';
-import { tellOfExistingAccount, writeResetEmail, writeVerificationEmail } from './account-emails.ts';
+import {
+  tellOfExistingAccount,
+  tellOfNewPassword,
+  writeResetEmail,
+  writeVerificationEmail,
+} from './account-emails.ts';
 import { CLIENT_ADDRESS_HEADER } from './client-address.ts';
+import { forgetEmailChange } from './pending-email-change.ts';
 import { sequelizeAdapter } from './sequelize-adapter.ts';
 
 type AnyModel = ModelStatic<Model<Record<string, unknown>, Record<string, unknown>>>;
@@ -47,7 +53,6 @@ export const auth = betterAuth({
       units: { type: 'string', input: false, required: false },
       erasedAt: { type: 'date', input: false, required: false },
     },
-    changeEmail: { enabled: true },
   },
   session: {
     expiresIn: 30 * DAY,
@@ -67,7 +72,10 @@ export const auth = betterAuth({
     sendResetPassword: ({ user, token }) => writeResetEmail(user, token),
     // Whoever opened the link reads this mailbox: that confirms the address.
     onPasswordReset: async ({ user }) => {
-      await User.update({ emailVerified: true }, { where: { id: user.id } });
+      await User.update({ emailVerified: true }, { where: { id: user.id }, fields: ['emailVerified'] });
+      // A move to another address may be what the reset is meant to stop.
+      await forgetEmailChange(user.id);
+      await tellOfNewPassword(user);
     },
     onExistingUserSignUp: ({ user }) => tellOfExistingAccount(user),
   },

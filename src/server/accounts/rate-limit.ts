@@ -51,6 +51,14 @@ export async function forgetTokens(key: string): Promise<void> {
   });
 }
 
+/** Takes one try back: what a person got right does not use up what others at the same address may try. */
+export async function giveTokenBack(key: string): Promise<void> {
+  await sequelize.query('update rate_limits set count = greatest(count - 1, 0) where key = :key', {
+    replacements: { key: hash(key) },
+    type: QueryTypes.RAW,
+  });
+}
+
 /** Removes counts that are older than a day. @returns how many went */
 export async function sweepRateLimits(): Promise<number> {
   const rows = await sequelize.query(
