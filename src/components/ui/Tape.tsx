@@ -6,6 +6,8 @@ import {
   findNearestStretch,
   findStretch,
   moveAlong,
+  readableLimits,
+  readableStretch,
   settleOn,
   type ExcludedStretch,
   type TapeMove,
@@ -33,6 +35,17 @@ interface TapeProps {
   onChange: (nm: number) => void;
 }
 
+/**
+ * A length as the field shows it: in sixty-fourths where it is a whole number of them, else to the graduations of the
+ * blade, so that a plan's 600 mm reads 23 5/8 in and what was typed in sixty-fourths stays as it was typed.
+ */
+function write(nm: number, units: UnitSystem): string {
+  const fine = formatLength(nm, { units, denominator: 64 });
+  return fine.remainderNm === 0 || units === 'mm'
+    ? fine.text
+    : formatLength(nm, { units, denominator: 16 }).text;
+}
+
 const noExclusions: readonly ExcludedStretch[] = [];
 const neverChanges = () => () => undefined;
 
@@ -44,10 +57,10 @@ const TAP_PX = 4;
  * (arrows one graduation, with Shift or as Page Up and Page Down ten, Home and End the limits).
  */
 export function Tape(props: TapeProps) {
-  const { label, name, valueNm, minNm, maxNm, units, excluded = noExclusions, hint, error, onChange } = props;
+  const { label, name, valueNm, units, excluded = noExclusions, hint, error, onChange } = props;
   const id = useId();
-  const limits = { minNm, maxNm, excluded };
-  const write = (nm: number) => formatLength(nm, { units, denominator: 64 }).text;
+  const limits = readableLimits({ minNm: props.minNm, maxNm: props.maxNm, excluded }, units);
+  const { minNm, maxNm } = limits;
 
   const [typed, setTyped] = useState<string | null>(null);
   const [refusal, setRefusal] = useState<string | null>(null);
@@ -60,8 +73,10 @@ export function Tape(props: TapeProps) {
     () => false,
   );
 
-  const sayStretch = ({ fromNm, toNm, reason }: ExcludedStretch) =>
-    `Not ${write(fromNm)} to ${write(toNm)}: ${reason}`;
+  function sayStretch(stretch: ExcludedStretch): string {
+    const { fromNm, toNm, reason } = readableStretch(stretch, units);
+    return `Not ${write(fromNm, units)} to ${write(toNm, units)}: ${reason}`;
+  }
   const nearest = findNearestStretch(valueNm, limits);
   const trouble = refusal ?? error ?? null;
 
@@ -118,8 +133,8 @@ export function Tape(props: TapeProps) {
     if (typed === null) return;
     const parsed = parseLength(typed, units);
     if (!parsed.ok) return refuse(`${parsed.message} ${parsed.hint}`);
-    if (parsed.nm < minNm) return refuse(`The least is ${write(minNm)}.`);
-    if (parsed.nm > maxNm) return refuse(`The most is ${write(maxNm)}.`);
+    if (parsed.nm < minNm) return refuse(`The least is ${write(minNm, units)}.`);
+    if (parsed.nm > maxNm) return refuse(`The most is ${write(maxNm, units)}.`);
     const stretch = findStretch(parsed.nm, limits);
     if (stretch) return refuse(sayStretch(stretch));
     take({ nm: parsed.nm, leapt: null });
@@ -145,7 +160,7 @@ export function Tape(props: TapeProps) {
           id={`${id}-field`}
           type="text"
           name={isLive ? undefined : name}
-          value={typed ?? (isLive ? write(valueNm) : exact)}
+          value={typed ?? (isLive ? write(valueNm, units) : exact)}
           autoComplete="off"
           enterKeyHint="done"
           aria-describedby={`${id}-limits ${id}-message`}
@@ -170,7 +185,7 @@ export function Tape(props: TapeProps) {
         aria-valuemin={inUnits(minNm)}
         aria-valuemax={inUnits(maxNm)}
         aria-valuenow={inUnits(valueNm)}
-        aria-valuetext={write(valueNm)}
+        aria-valuetext={write(valueNm, units)}
         aria-describedby={`${id}-limits`}
         onKeyDown={onKeyDown}
         onPointerDown={onPointerDown}
@@ -197,11 +212,12 @@ export function Tape(props: TapeProps) {
         onPoint={(nm) => take(settleOn(nm, limits, units))}
       />
       <div className="tape__limits" aria-hidden="true">
-        <span>{write(minNm)}</span>
-        <span>{write(maxNm)}</span>
+        <span>{write(minNm, units)}</span>
+        <span>{write(maxNm, units)}</span>
       </div>
       <span className="unseen" id={`${id}-limits`}>
-        From {write(minNm)} to {write(maxNm)}. {excluded.map((stretch) => `${sayStretch(stretch)} `)}
+        From {write(minNm, units)} to {write(maxNm, units)}.{' '}
+        {excluded.map((stretch) => `${sayStretch(stretch)} `)}
       </span>
       <div className="tape__message" id={`${id}-message`} role="status">
         {trouble === null ? null : <span className="field__error">{trouble}</span>}

@@ -46,13 +46,6 @@ export function TapeBlade({ valueNm, units, minNm, maxNm, excluded, id }: TapeBl
       <svg x="50%" overflow="visible">
         <rect className="tape__steel" x={left} y={TOP} width={Math.max(0, right - left)} height={depth} />
         <path className="tape__lines" d={path} />
-        {lines
-          .filter(({ figure }) => figure !== '')
-          .map(({ nm, figure }) => (
-            <text key={nm} className="tape__figure" x={toX(nm) + 4} y={BOTTOM - 6}>
-              {figure}
-            </text>
-          ))}
         {excluded.map((stretch) => (
           <rect
             key={stretch.fromNm}
@@ -63,6 +56,13 @@ export function TapeBlade({ valueNm, units, minNm, maxNm, excluded, id }: TapeBl
             fill={`url(#${id})`}
           />
         ))}
+        {lines
+          .filter(({ figure }) => figure !== '')
+          .map(({ nm, figure }) => (
+            <text key={nm} className="tape__figure" x={toX(nm) + 4} y={BOTTOM - 6}>
+              {figure}
+            </text>
+          ))}
         <path
           className="tape__edge"
           d={`M${String(left)} ${String(TOP)}H${String(right)}M${String(left)} ${String(BOTTOM)}H${String(right)}`}
@@ -84,10 +84,10 @@ function Hook({ x, direction }: { x: number; direction: 1 | -1 }) {
       <path className="tape__hook" d={plate} />
       <path
         className="tape__plate"
-        d={`M${String(x)} ${String(TOP + 30)}h${String(13 * direction)}v${String(12)}h${String(-13 * direction)}z`}
+        d={`M${String(x)} ${String(TOP + 21)}h${String(13 * direction)}v9h${String(-13 * direction)}z`}
       />
-      <circle className="tape__rivet" cx={x + 4.5 * direction} cy={TOP + 36} r="1.6" />
-      <circle className="tape__rivet" cx={x + 9.5 * direction} cy={TOP + 36} r="1.6" />
+      <circle className="tape__rivet" cx={x + 4.5 * direction} cy={TOP + 25.5} r="1.6" />
+      <circle className="tape__rivet" cx={x + 9.5 * direction} cy={TOP + 25.5} r="1.6" />
     </g>
   );
 }

@@ -1,4 +1,4 @@
-import { NM_PER_INCH, NM_PER_MM, type UnitSystem } from '#lib/units/length.ts';
+import { NM_PER_64TH, NM_PER_INCH, NM_PER_MM, type UnitSystem } from '#lib/units/length.ts';
 
 /** A stretch between the limits at which the plan cannot be built; both ends are refused too. */
 export interface ExcludedStretch {
@@ -31,6 +31,32 @@ export interface Graduation {
 /** The finest division of the blade: a sixteenth of an inch, or a millimetre. */
 export function tapeGraduationNm(units: UnitSystem): number {
   return units === 'in' ? NM_PER_INCH / 16 : NM_PER_MM;
+}
+
+/** The finest reading that is written beside the tape: a sixty-fourth of an inch, or a tenth of a millimetre. */
+function readingNm(units: UnitSystem): number {
+  return units === 'in' ? NM_PER_64TH : NM_PER_MM / 10;
+}
+
+/**
+ * The limits as this reader can write them: the least rounded up and the most rounded down to the finest reading, so
+ * that every limit the tape names is one it takes. 1200 mm become 47 15/64 in, and not 47 1/4, which is too much.
+ * Where nothing would be left between them the limits stay as they are.
+ */
+export function readableLimits(limits: TapeLimits, units: UnitSystem): TapeLimits {
+  const reading = readingNm(units);
+  const minNm = Math.ceil(limits.minNm / reading) * reading;
+  const maxNm = Math.floor(limits.maxNm / reading) * reading;
+  return minNm > maxNm ? limits : { ...limits, minNm, maxNm };
+}
+
+/** The ends of an excluded stretch as this reader can write them, drawn in so that both are truly refused. */
+export function readableStretch(stretch: ExcludedStretch, units: UnitSystem): ExcludedStretch {
+  const { minNm, maxNm } = readableLimits(
+    { minNm: stretch.fromNm, maxNm: stretch.toNm, excluded: [] },
+    units,
+  );
+  return { ...stretch, fromNm: minNm, toNm: maxNm };
 }
 
 /** The stretch that a length lies in, or null. */
