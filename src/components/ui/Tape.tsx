@@ -96,8 +96,8 @@ export function Tape(props: TapeProps) {
       ArrowDown: () => moveAlong(valueNm, -stride, limits, units),
       PageUp: () => moveAlong(valueNm, 10, limits, units),
       PageDown: () => moveAlong(valueNm, -10, limits, units),
-      Home: () => ({ nm: minNm, leapt: null }),
-      End: () => ({ nm: maxNm, leapt: null }),
+      Home: () => settleOn(valueNm, minNm, limits, units),
+      End: () => settleOn(valueNm, maxNm, limits, units),
     };
     const move = moves[event.key];
     if (!move || event.altKey || event.ctrlKey || event.metaKey) return;
@@ -117,7 +117,7 @@ export function Tape(props: TapeProps) {
     const dx = event.clientX - start.x;
     if (!start.hasMoved && Math.abs(dx) < TAP_PX) return;
     start.hasMoved = true;
-    take(settleOn(start.nm - (dx / PX_PER_MM) * NM_PER_MM, limits, units));
+    take(settleOn(valueNm, start.nm - (dx / PX_PER_MM) * NM_PER_MM, limits, units));
   }
 
   function onPointerUp(event: PointerEvent<HTMLDivElement>) {
@@ -126,7 +126,7 @@ export function Tape(props: TapeProps) {
     if (start === null || start.hasMoved) return;
     const box = event.currentTarget.getBoundingClientRect();
     const fromIndex = event.clientX - (box.left + box.width / 2);
-    take(settleOn(valueNm + (fromIndex / PX_PER_MM) * NM_PER_MM, limits, units));
+    take(settleOn(valueNm, valueNm + (fromIndex / PX_PER_MM) * NM_PER_MM, limits, units));
   }
 
   function takeTyped() {
@@ -209,7 +209,7 @@ export function Tape(props: TapeProps) {
         minNm={minNm}
         maxNm={maxNm}
         excluded={excluded}
-        onPoint={(nm) => take(settleOn(nm, limits, units))}
+        onPoint={(nm) => take(settleOn(valueNm, nm, limits, units))}
       />
       <div className="tape__limits" aria-hidden="true">
         <span>{write(minNm, units)}</span>

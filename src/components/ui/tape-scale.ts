@@ -108,9 +108,9 @@ export function moveAlong(nm: number, count: number, limits: TapeLimits, units: 
 
 /**
  * The nearest length that the tape may be set to and that stands on a graduation (or is a limit): where a finger lets
- * go. In an excluded stretch it goes to the nearer end that leads out.
+ * go. From an excluded stretch it goes to the nearer end that leads out, and where none does the tape stays as it is.
  */
-export function settleOn(wantedNm: number, limits: TapeLimits, units: UnitSystem): TapeMove {
+export function settleOn(nm: number, wantedNm: number, limits: TapeLimits, units: UnitSystem): TapeMove {
   const graduation = tapeGraduationNm(units);
   const target = clamp(Math.round(clamp(wantedNm, limits) / graduation) * graduation, limits);
   const leapt = findStretch(target, limits);
@@ -119,7 +119,7 @@ export function settleOn(wantedNm: number, limits: TapeLimits, units: UnitSystem
   const above = leap(target, 1, limits, units);
   const ways = [below, above].filter((way) => way !== null);
   ways.sort((a, b) => Math.abs(a - wantedNm) - Math.abs(b - wantedNm));
-  return { nm: ways[0] ?? target, leapt };
+  return { nm: ways[0] ?? nm, leapt };
 }
 
 /** How deep each line of an inch reaches in, by sixteenths: whole, half, quarter, eighth, sixteenth. */
