@@ -120,7 +120,11 @@ export const up: Migration = async ({ sql }) => {
       price_minor integer not null check (price_minor >= 0),
       discount_minor integer not null default 0 check (discount_minor >= 0 and discount_minor <= price_minor),
       tax_minor integer not null default 0 check (tax_minor >= 0),
-      refunded_minor integer not null default 0 check (refunded_minor >= 0),
+      -- The payment service's fee and the imprint's share as they stood when the line was paid, so that a refund undoes the same.
+      fee_minor integer not null default 0 check (fee_minor >= 0),
+      share_permille integer not null default 0 check (share_permille between 0 and 1000),
+      refunded_minor integer not null default 0
+        check (refunded_minor >= 0 and refunded_minor <= price_minor - discount_minor),
       unique (order_id, plan_id, kind)
     );
     create index order_lines_plan on order_lines (plan_id, order_id);

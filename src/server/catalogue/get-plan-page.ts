@@ -13,7 +13,7 @@ import {
 import { defaultFit } from '#lib/plan/check-fit.ts';
 import { publicFigures, type PublicFigures } from '#lib/plan/public-figures.ts';
 import { resolvePlan } from '#lib/plan/resolve.ts';
-import type { Fit, FrontMatter, Prose, UnitSystem } from '#lib/plan/types.ts';
+import type { Fit, FrontMatter, ResolvedProse, UnitSystem } from '#lib/plan/types.ts';
 import { checkFit } from '#lib/plan/check-fit.ts';
 import { allowedStretches, type Stretch } from '#lib/plan/allowed-stretches.ts';
 import type { Actor } from '../accounts/actor.ts';
@@ -36,7 +36,7 @@ export interface PlanPage {
   id: string;
   slug: string;
   front: FrontMatter;
-  story: Prose;
+  story: ResolvedProse;
   imprint: { slug: string; name: string; about: string };
   revision: { letter: string; publishedAt: string };
   revisions: { letter: string; publishedAt: string; notes: string }[];
