@@ -219,11 +219,16 @@ export function Tape(props: TapeProps) {
         From {write(minNm, units)} to {write(maxNm, units)}.{' '}
         {excluded.map((stretch) => `${sayStretch(stretch)} `)}
       </span>
-      <div className="tape__message" id={`${id}-message`} role="status">
-        {trouble === null ? null : <span className="field__error">{trouble}</span>}
-        {trouble === null && leapt !== null ? <span className="field__hint">{sayStretch(leapt)}</span> : null}
+      <div className="tape__message">
+        <div id={`${id}-message`} role="status">
+          {trouble === null ? null : <span className="field__error">{trouble}</span>}
+          {trouble === null && leapt !== null ? <span className="field__hint">{sayStretch(leapt)}</span> : null}
+        </div>
         {trouble === null && leapt === null && nearest !== null ? (
-          <span className="field__hint tape__nearest">{sayStretch(nearest)}</span>
+          // For the eye: the ear has it in the description of the slider.
+          <span className="field__hint tape__nearest" aria-hidden="true">
+            {sayStretch(nearest)}
+          </span>
         ) : null}
       </div>
     </div>
