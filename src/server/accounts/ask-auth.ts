@@ -1,16 +1,12 @@
 import { APIError } from 'better-auth/api';
 import { AppError, type ErrorCode } from '../errors.ts';
 
-const translations: Record<string, { code: ErrorCode; detail?: string; field?: string }> = {
+const translations: Record<string, { code: ErrorCode; detail: string }> = {
   INVALID_EMAIL_OR_PASSWORD: {
     code: 'WRONG_PASSWORD',
     detail: 'E-mail or password do not match. Check both, or set a new password.',
   },
-  INVALID_PASSWORD: {
-    code: 'BAD_INPUT',
-    detail: 'This is not your current password.',
-    field: 'currentPassword',
-  },
+  INVALID_PASSWORD: { code: 'BAD_INPUT', detail: 'This is not your current password.' },
   EMAIL_NOT_VERIFIED: {
     code: 'EMAIL_UNVERIFIED',
     detail: 'Your e-mail address is not confirmed yet. We have sent the link again; open it, then sign in.',
@@ -27,10 +23,10 @@ const translations: Record<string, { code: ErrorCode; detail?: string; field?: s
 };
 
 /**
- * Calls the sign-in library and puts its refusals into our own words and codes.
+ * Calls the sign-in library and puts its refusals into our own words and codes; `field` is the form field that they mark.
  * @throws AppError WRONG_PASSWORD, EMAIL_UNVERIFIED, TOKEN_SPENT, SIGN_IN_REQUIRED or BAD_INPUT; anything else as it was
  */
-export async function askAuth<Result>(run: () => Promise<Result>): Promise<Result> {
+export async function askAuth<Result>(run: () => Promise<Result>, field?: string): Promise<Result> {
   try {
     return await run();
   } catch (cause) {
@@ -38,10 +34,10 @@ export async function askAuth<Result>(run: () => Promise<Result>): Promise<Resul
     const code: unknown = cause.body?.code;
     const translation = typeof code === 'string' ? translations[code] : undefined;
     if (translation) {
-      const { detail, field } = translation;
+      const { detail } = translation;
       throw new AppError(translation.code, {
-        ...(detail ? { detail } : {}),
-        ...(field && detail ? { fields: { [field]: detail } } : {}),
+        detail,
+        ...(field ? { fields: { [field]: detail } } : {}),
         cause,
       });
     }

@@ -36,7 +36,7 @@ export async function changeEmail(options: {
     const detail = 'This is your address already.';
     refuse('BAD_INPUT', { detail, fields: { newEmail: detail } });
   }
-  await checkPassword({ userId: actor.id, password: currentPassword, headers });
+  await checkPassword({ userId: actor.id, password: currentPassword, headers, field: 'emailPassword' });
   const secret = makeSecret();
   await sequelize.transaction(async (transaction) => {
     // The row of the person is the lock: two requests at once leave one move.

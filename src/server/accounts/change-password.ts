@@ -18,7 +18,7 @@ export async function changePassword(options: {
   headers: Headers;
 }): Promise<{ cookies: string[] }> {
   const { actor, currentPassword, newPassword, headers } = options;
-  await checkPassword({ userId: actor.id, password: currentPassword, headers });
+  await checkPassword({ userId: actor.id, password: currentPassword, headers, field: 'currentPassword' });
   const { headers: answer } = await askAuth(() =>
     auth.api.changePassword({
       body: { currentPassword, newPassword, revokeOtherSessions: true },

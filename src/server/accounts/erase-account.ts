@@ -73,7 +73,7 @@ async function removeFiles(keys: readonly string[]): Promise<void> {
  * Erases a person and keeps the books: the row of the account stays without name or address, orders and licences stay
  * with their numbers and amounts, the ledger is untouched. Copies are removed from the store, for they carry the name. What was written in public stays without its name.
  * It cannot be taken back, so the password is asked for.
- * @throws AppError TOO_MANY, BAD_INPUT on `currentPassword`, CONFLICT for the only owner of an imprint
+ * @throws AppError TOO_MANY, BAD_INPUT on `erasePassword`, CONFLICT for the only owner of an imprint
  */
 export async function eraseAccount(options: {
   actor: SignedInUser;
@@ -82,7 +82,7 @@ export async function eraseAccount(options: {
 }): Promise<void> {
   const { actor, currentPassword, headers } = options;
   const userId = actor.id;
-  await checkPassword({ userId, password: currentPassword, headers });
+  await checkPassword({ userId, password: currentPassword, headers, field: 'erasePassword' });
   const files = await sequelize.transaction(async (transaction) => {
     await requireNotLastOwner(userId, transaction);
     const own = { where: { userId }, transaction };
