@@ -78,8 +78,8 @@ export interface FormDone {
  */
 export function formEndpoint<Schema extends z.ZodType>(options: {
   schema: Schema;
-  /** The page that holds the form. */
-  back: (context: APIContext) => string;
+  /** The page that holds the form; `typed` is what was sent, without secrets. */
+  back: (context: APIContext, typed: Readonly<Record<string, string | string[]>>) => string;
   run: (asked: Asked<z.infer<Schema>>) => Promise<FormDone | Response>;
 }): APIRoute {
   return async (context) => {
@@ -98,14 +98,14 @@ export function formEndpoint<Schema extends z.ZodType>(options: {
     } catch (error) {
       const refusal = toRefusal(error, context.locals.requestId);
       if (refusal.code === 'SIGN_IN_REQUIRED') {
-        return context.redirect(`/sign-in?next=${encodeURIComponent(options.back(context))}`, 303);
+        return context.redirect(`/sign-in?next=${encodeURIComponent(options.back(context, typed))}`, 303);
       }
       await rememberForm(context.cookies, {
         problem: refusal.fields['form'] ?? refusal.detail,
         values: typed,
         errors: refusal.fields,
       });
-      return context.redirect(options.back(context), 303);
+      return context.redirect(options.back(context, typed), 303);
     }
   };
 }

@@ -8,9 +8,9 @@ import { redirectWithCookies } from '#server/http/redirect-with-cookies.ts';
 
 export const POST = formEndpoint({
   schema: z.object({ email: emailSchema, password: typedPasswordSchema }),
-  back: ({ url }) => paths.signIn(safeNext(url.searchParams.get('next'))),
+  back: ({ url }) => paths.signIn(safeNext(url.searchParams.get('next') ?? paths.drawer())),
   run: async ({ input, context }) => {
     const { cookies } = await signIn({ ...input, headers: context.request.headers });
-    return redirectWithCookies(safeNext(context.url.searchParams.get('next')), cookies);
+    return redirectWithCookies(safeNext(context.url.searchParams.get('next') ?? paths.drawer()), cookies);
   },
 });
