@@ -30,6 +30,7 @@ export const onRequest = defineMiddleware(async ({ isPrerendered, locals, reques
     // The same address shows another page to somebody else, and other units.
     response.headers.set('cache-control', 'private, no-cache');
   }
-  response.headers.append('vary', 'cookie, accept-language');
+  if (!response.headers.get('vary')?.includes('cookie'))
+    response.headers.append('vary', 'cookie, accept-language');
   return response;
 });

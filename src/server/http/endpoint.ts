@@ -105,9 +105,20 @@ export function formEndpoint<Schema extends z.ZodType>(options: {
         values: typed,
         errors: refusal.fields,
       });
-      return context.redirect(options.back(context, typed), 303);
+      const back = options.back(context, typed);
+      if (refusal.retryAfter) return await showAgain(context, back, refusal.retryAfter);
+      return context.redirect(back, 303);
     }
   };
+}
+
+/** The page of the form itself, with the status and header that tell a program to wait; a redirect could not say so. */
+async function showAgain(context: APIContext, page: string, retryAfter: number): Promise<Response> {
+  const { headers } = context.request;
+  const shown = await context.rewrite(new Request(new URL(page, context.url), { headers }));
+  const answer = new Response(shown.body, { status: 429, headers: shown.headers });
+  answer.headers.set('retry-after', String(retryAfter));
+  return answer;
 }
 
 function keepTyped(fields: Record<string, unknown>): Record<string, string | string[]> {
