@@ -222,7 +222,9 @@ export function Tape(props: TapeProps) {
       <div className="tape__message">
         <div id={`${id}-message`} role="status">
           {trouble === null ? null : <span className="field__error">{trouble}</span>}
-          {trouble === null && leapt !== null ? <span className="field__hint">{sayStretch(leapt)}</span> : null}
+          {trouble === null && leapt !== null ? (
+            <span className="field__hint">{sayStretch(leapt)}</span>
+          ) : null}
         </div>
         {trouble === null && leapt === null && nearest !== null ? (
           // For the eye: the ear has it in the description of the slider.
