@@ -1,5 +1,5 @@
 import type { APIContext, APIRoute } from 'astro';
-import * as z from 'zod';
+import type * as z from 'zod';
 import type { Actor } from '../accounts/actor.ts';
 import { AppError } from '../errors.ts';
 import { rememberForm } from './form-memory.ts';
