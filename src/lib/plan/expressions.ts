@@ -24,11 +24,17 @@ export interface CheckContext {
 }
 
 /** Constructs of JavaScript that the plan language has no use for: what to call them, and what to do instead. */
-const REFUSED: ReadonlyMap<string, readonly [what: string, hint: string]> = new Map<string, readonly [string, string]>([
+const REFUSED: ReadonlyMap<string, readonly [what: string, hint: string]> = new Map<
+  string,
+  readonly [string, string]
+>([
   ['ArrowFunctionExpression', ['A function', 'Write the value itself, or give it a name with <Let>.']],
   ['FunctionExpression', ['A function', 'Write the value itself, or give it a name with <Let>.']],
   ['ClassExpression', ['A class', 'Write the value itself, or give it a name with <Let>.']],
-  ['AssignmentExpression', ['An assignment', 'Compare with ===, or declare the value with <Let name="…" value={…} />.']],
+  [
+    'AssignmentExpression',
+    ['An assignment', 'Compare with ===, or declare the value with <Let name="…" value={…} />.'],
+  ],
   ['UpdateExpression', ['Counting up or down', 'Write a + 1 or a - 1.']],
   ['NewExpression', ['“new”', 'Leave it out.']],
   ['TemplateLiteral', ['A text in backquotes', 'Write the text in double quotes.']],
@@ -80,6 +86,15 @@ function childrenOf(node: EsNode): EsNode[] {
   }
 }
 
+/** Beside * and / a unit's name always means the unit, even where a choice of texts has the same name (`foot`). */
+function isFactorSign(sign: string): boolean {
+  return sign === '*' || sign === '/';
+}
+
+function isUnitNode(node: EsNode): boolean {
+  return node.type === 'Identifier' && UNITS.has(node.name);
+}
+
 /**
  * Names that an expression mentions, found without recursion. Used before kinds are known, to put the derived values in order.
  */
@@ -88,7 +103,8 @@ export function namesIn(root: EsExpression): string[] {
   const stack: EsNode[] = [root];
   for (let node = stack.pop(); node !== undefined; node = stack.pop()) {
     if (node.type === 'Identifier') names.add(node.name);
-    stack.push(...childrenOf(node));
+    const isProduct = node.type === 'BinaryExpression' && isFactorSign(node.operator);
+    stack.push(...childrenOf(node).filter((child) => !(isProduct && isUnitNode(child))));
   }
   return [...names];
 }
@@ -145,7 +161,10 @@ function checkLiteral(node: EsExpression & { type: 'Literal' }, context: CheckCo
   }
   if (typeof node.value === 'number') {
     if (!Number.isFinite(node.value)) {
-      return report(context, node, { rule: 'not-finite', message: `${textOf(context, node)} is too large for a number.` });
+      return report(context, node, {
+        rule: 'not-finite',
+        message: `${textOf(context, node)} is too large for a number.`,
+      });
     }
     return { op: 'value', kind: 'number', value: node.value };
   }
@@ -158,11 +177,15 @@ function checkLiteral(node: EsExpression & { type: 'Literal' }, context: CheckCo
   });
 }
 
-function checkName(node: EsNode & { type: 'Identifier' }, context: CheckContext): Expression | null {
+function checkName(
+  node: EsNode & { type: 'Identifier' },
+  context: CheckContext,
+  isFactor: boolean,
+): Expression | null {
   const { name } = node;
   const unit = UNITS.get(name);
-  if (unit) return { op: 'value', kind: unit.kind, value: unit.value };
   const meaning = context.scope.get(name);
+  if (unit && (isFactor || meaning === undefined)) return { op: 'value', kind: unit.kind, value: unit.value };
   if (meaning === undefined) {
     const called = FUNCTIONS.get(name);
     if (called) {
@@ -177,7 +200,9 @@ function checkName(node: EsNode & { type: 'Identifier' }, context: CheckContext)
       rule: 'unknown-name',
       message: `Nothing in this plan is called “${name}”.`,
       found: name,
-      hint: near ? `Did you mean ${near}?` : `Declare it with <Size name="${name}" …/> or <Let name="${name}" value={…} />.`,
+      hint: near
+        ? `Did you mean ${near}?`
+        : `Declare it with <Size name="${name}" …/> or <Let name="${name}" value={…} />.`,
     });
   }
   if (meaning.type === 'material' || meaning.type === 'part') {
@@ -191,7 +216,10 @@ function checkName(node: EsNode & { type: 'Identifier' }, context: CheckContext)
   return meaning.kind === null ? null : { op: 'name', kind: meaning.kind, name };
 }
 
-function checkMember(node: EsExpression & { type: 'MemberExpression' }, context: CheckContext): Expression | null {
+function checkMember(
+  node: EsExpression & { type: 'MemberExpression' },
+  context: CheckContext,
+): Expression | null {
   if (node.computed || node.property.type !== 'Identifier') {
     return report(context, node, {
       rule: 'not-in-the-language',
@@ -210,13 +238,20 @@ function checkMember(node: EsExpression & { type: 'MemberExpression' }, context:
   const member = node.property.name;
   const meaning = context.scope.get(name);
   if (meaning === undefined) {
-    const marks = [...context.scope].filter(([, found]) => found.type === 'material' || found.type === 'part');
-    const near = suggestName(name, marks.map(([known]) => known));
+    const marks = [...context.scope].filter(
+      ([, found]) => found.type === 'material' || found.type === 'part',
+    );
+    const near = suggestName(
+      name,
+      marks.map(([known]) => known),
+    );
     return report(context, node.object, {
       rule: 'unknown-name',
       message: `Nothing in this plan is called “${name}”.`,
       found: name,
-      hint: near ? `Did you mean ${near}.${member}?` : 'Declare it with <Material name="…" …/> or <Part mark="…" …/>.',
+      hint: near
+        ? `Did you mean ${near}.${member}?`
+        : 'Declare it with <Material name="…" …/> or <Part mark="…" …/>.',
     });
   }
   if (meaning.type !== 'material' && meaning.type !== 'part') {
@@ -235,7 +270,9 @@ function checkMember(node: EsExpression & { type: 'MemberExpression' }, context:
       message: `A ${meaning.type} has no “${member}”.`,
       found: member,
       wanted: all.join(', '),
-      hint: near ? `Did you mean ${name}.${near}?` : `Write ${all.map((each) => `${name}.${each}`).join(', ')}.`,
+      hint: near
+        ? `Did you mean ${name}.${near}?`
+        : `Write ${all.map((each) => `${name}.${each}`).join(', ')}.`,
     });
   }
   if (meaning.type === 'material' && !meaning.members.has(known)) {
@@ -245,11 +282,23 @@ function checkMember(node: EsExpression & { type: 'MemberExpression' }, context:
       hint: `Add ${known}="…" to <Material name="${name}" …/>.`,
     });
   }
-  return { op: 'member', kind: known === 'qty' ? 'number' : 'length', of: meaning.type, name, member: known satisfies Member };
+  return {
+    op: 'member',
+    kind: known === 'qty' ? 'number' : 'length',
+    of: meaning.type,
+    name,
+    member: known satisfies Member,
+  };
 }
 
 /** Says that two kinds do not go together. A bare number beside a measure gets the cure that is nearly always meant. */
-function reportKinds(node: EsNode, sign: string, left: Expression, right: Expression, context: CheckContext): null {
+function reportKinds(
+  node: EsNode,
+  sign: string,
+  left: Expression,
+  right: Expression,
+  context: CheckContext,
+): null {
   const bare = left.kind === 'number' ? left : right.kind === 'number' ? right : undefined;
   const measure = bare === left ? right : left;
   let hint = 'Bring both sides to one kind.';
@@ -258,7 +307,10 @@ function reportKinds(node: EsNode, sign: string, left: Expression, right: Expres
   else if (bare && measure.kind === 'mass') hint = 'Give the number a unit: 20*kg.';
   return report(context, node, {
     rule: 'kinds-differ',
-    message: `${describeKind(left.kind)} ${sign} ${describeKind(right.kind)} has no meaning.`.replace(/^./, (first) => first.toUpperCase()),
+    message: `${describeKind(left.kind)} ${sign} ${describeKind(right.kind)} has no meaning.`.replace(
+      /^./,
+      (first) => first.toUpperCase(),
+    ),
     found: `${describeKind(left.kind)} ${sign} ${describeKind(right.kind)}`,
     hint,
   });
@@ -278,24 +330,38 @@ function checkOptionText(node: EsNode, left: Expression, right: Expression, cont
     message: `The choice “${name.name}” has no option “${value.value}”.`,
     found: value.value,
     wanted: values.join(', '),
-    hint: near ? `Did you mean "${near}"?` : `Its options are ${values.map((option) => `"${option}"`).join(', ')}.`,
+    hint: near
+      ? `Did you mean "${near}"?`
+      : `Its options are ${values.map((option) => `"${option}"`).join(', ')}.`,
   });
 }
 
-function combine(node: EsNode, sign: string, left: Expression, right: Expression, context: CheckContext): Expression | null {
+function combine(
+  node: EsNode,
+  sign: string,
+  left: Expression,
+  right: Expression,
+  context: CheckContext,
+): Expression | null {
   let kind: Kind | null = null;
   if (sign === '+' || sign === '-' || sign === '%') {
     kind = isNumericKind(left.kind) && left.kind === right.kind ? left.kind : null;
   } else if (sign === '*') kind = multiplyKinds(left.kind, right.kind);
   else if (sign === '/') kind = divideKinds(left.kind, right.kind);
   else if (ORDERING.has(sign)) kind = isNumericKind(left.kind) && left.kind === right.kind ? 'yesno' : null;
-  else if (EQUALITY.has(sign)) kind = typeof left.kind === 'string' && left.kind === right.kind ? 'yesno' : null;
+  else if (EQUALITY.has(sign))
+    kind = typeof left.kind === 'string' && left.kind === right.kind ? 'yesno' : null;
   else kind = left.kind === 'yesno' && right.kind === 'yesno' ? 'yesno' : null;
   if (kind === null) return reportKinds(node, sign, left, right, context);
   if (EQUALITY.has(sign) && left.kind === 'text') checkOptionText(node, left, right, context);
 
   // Constants are worked out once, here; what is not finite now never will be.
-  if (left.op === 'value' && right.op === 'value' && typeof left.value === 'number' && typeof right.value === 'number') {
+  if (
+    left.op === 'value' &&
+    right.op === 'value' &&
+    typeof left.value === 'number' &&
+    typeof right.value === 'number'
+  ) {
     if (ARITHMETIC.has(sign)) {
       const value = calculate(sign, left.value, right.value);
       if (!Number.isFinite(value)) {
@@ -330,9 +396,10 @@ function checkBinary(node: EsExpression, context: CheckContext): Expression | nu
     row.push(leftmost);
     leftmost = leftmost.left;
   }
-  let left = checkNode(leftmost, context);
-  for (const each of row.reverse()) {
-    const right = checkNode(each.right, context);
+  row.reverse();
+  let left = checkNode(leftmost, context, isFactorSign(row[0]?.operator ?? ''));
+  for (const each of row) {
+    const right = checkNode(each.right, context, isFactorSign(each.operator));
     if (!KNOWN_SIGNS.has(each.operator)) {
       left = report(context, each, {
         rule: 'not-in-the-language',
@@ -346,7 +413,10 @@ function checkBinary(node: EsExpression, context: CheckContext): Expression | nu
   return left;
 }
 
-function checkUnary(node: EsExpression & { type: 'UnaryExpression' }, context: CheckContext): Expression | null {
+function checkUnary(
+  node: EsExpression & { type: 'UnaryExpression' },
+  context: CheckContext,
+): Expression | null {
   const sign = node.operator;
   if (sign !== '-' && sign !== '+' && sign !== '!') {
     return report(context, node, {
@@ -372,7 +442,10 @@ function checkUnary(node: EsExpression & { type: 'UnaryExpression' }, context: C
   return { op: 'unary', kind: of.kind, sign, of };
 }
 
-function checkCondition(node: EsExpression & { type: 'ConditionalExpression' }, context: CheckContext): Expression | null {
+function checkCondition(
+  node: EsExpression & { type: 'ConditionalExpression' },
+  context: CheckContext,
+): Expression | null {
   const test = checkNode(node.test, context);
   const then = checkNode(node.consequent, context);
   const otherwise = checkNode(node.alternate, context);
@@ -399,7 +472,10 @@ function checkCondition(node: EsExpression & { type: 'ConditionalExpression' }, 
   return { op: 'if', kind: then.kind, test, then, otherwise };
 }
 
-function checkCall(node: EsExpression & { type: 'CallExpression' }, context: CheckContext): Expression | null {
+function checkCall(
+  node: EsExpression & { type: 'CallExpression' },
+  context: CheckContext,
+): Expression | null {
   const name = node.callee.type === 'Identifier' ? node.callee.name : undefined;
   const called = name === undefined ? undefined : FUNCTIONS.get(name);
   if (name === undefined || called === undefined) {
@@ -409,7 +485,9 @@ function checkCall(node: EsExpression & { type: 'CallExpression' }, context: Che
       message: `There is no function “${textOf(context, node.callee)}”.`,
       found: textOf(context, node.callee),
       wanted: [...FUNCTIONS.keys()].join(', '),
-      hint: near ? `Did you mean ${FUNCTIONS.get(near)?.usage}?` : `The functions are ${[...FUNCTIONS.keys()].join(', ')}.`,
+      hint: near
+        ? `Did you mean ${FUNCTIONS.get(near)?.usage}?`
+        : `The functions are ${[...FUNCTIONS.keys()].join(', ')}.`,
     });
   }
   const args = node.arguments.map((argument) => checkNode(argument, context));
@@ -436,10 +514,17 @@ function checkCall(node: EsExpression & { type: 'CallExpression' }, context: Che
   return { op: 'call', kind, name, args: known };
 }
 
-function checkList(node: EsExpression & { type: 'ArrayExpression' }, context: CheckContext): Expression | null {
+function checkList(
+  node: EsExpression & { type: 'ArrayExpression' },
+  context: CheckContext,
+): Expression | null {
   const items: (Expression | null)[] = node.elements.map((element) =>
     element === null
-      ? report(context, node, { rule: 'empty-place', message: 'A place in the list is empty.', hint: 'Write [a, b, c].' })
+      ? report(context, node, {
+          rule: 'empty-place',
+          message: 'A place in the list is empty.',
+          hint: 'Write [a, b, c].',
+        })
       : checkNode(element, context),
   );
   const known = items.filter((item) => item !== null);
@@ -449,12 +534,12 @@ function checkList(node: EsExpression & { type: 'ArrayExpression' }, context: Ch
   return { op: 'list', kind: { list: isAlike ? first : 'any' }, items: known };
 }
 
-function checkNode(node: EsNode, context: CheckContext): Expression | null {
+function checkNode(node: EsNode, context: CheckContext, isFactor = false): Expression | null {
   switch (node.type) {
     case 'Literal':
       return checkLiteral(node, context);
     case 'Identifier':
-      return checkName(node, context);
+      return checkName(node, context, isFactor);
     case 'MemberExpression':
       return checkMember(node, context);
     case 'BinaryExpression':
@@ -469,8 +554,15 @@ function checkNode(node: EsNode, context: CheckContext): Expression | null {
     case 'ArrayExpression':
       return checkList(node, context);
     default: {
-      const [what, hint] = REFUSED.get(node.type) ?? ['This', 'Use numbers, names, operators and the functions of the language.'];
-      return report(context, node, { rule: 'not-in-the-language', message: `${what} has no place in a plan.`, hint });
+      const [what, hint] = REFUSED.get(node.type) ?? [
+        'This',
+        'Use numbers, names, operators and the functions of the language.',
+      ];
+      return report(context, node, {
+        rule: 'not-in-the-language',
+        message: `${what} has no place in a plan.`,
+        hint,
+      });
     }
   }
 }
@@ -485,5 +577,5 @@ export function checkExpression(root: EsExpression, context: CheckContext): Expr
 
 /** An expression with its place and text. */
 export function makeFormula(expression: Expression, at: Place, text: string): Formula {
-  return { at, text: quoteSource(text), expression };
+  return { at, text: text.replace(/\s+/g, ' ').trim(), expression };
 }

@@ -62,7 +62,10 @@ function numericAlike(args: readonly Kind[]): Kind | { wanted: string } {
 function roundedKind(args: readonly Kind[]): Kind | { wanted: string } {
   const [value, step] = args;
   if (value === undefined || !isNumericKind(value)) return { wanted: 'a number or a measure' };
-  if (step === undefined) return value === 'number' ? 'number' : { wanted: `a step of the same kind, ${describeKind(value)}, as second value` };
+  if (step === undefined)
+    return value === 'number'
+      ? 'number'
+      : { wanted: `a step of the same kind, ${describeKind(value)}, as second value` };
   return isSameKind(value, step) ? value : { wanted: `a step of the same kind, ${describeKind(value)}` };
 }
 
@@ -71,7 +74,12 @@ const toNumber =
   (args: readonly Kind[]): Kind | { wanted: string } =>
     args[0] === wanted ? result : { wanted: wanted === 'angle' ? 'an angle, such as 30*deg' : 'a number' };
 
-const rounding = (usage: string, doc: string, run: (value: number, step: number) => number, least = 1): PlanFunction => ({
+const rounding = (
+  usage: string,
+  doc: string,
+  run: (value: number, step: number) => number,
+  least = 1,
+): PlanFunction => ({
   usage,
   doc,
   least,
@@ -82,12 +90,59 @@ const rounding = (usage: string, doc: string, run: (value: number, step: number)
 
 /** Every function by name. A Map, so that no name reaches a prototype. */
 export const FUNCTIONS: ReadonlyMap<string, PlanFunction> = new Map<string, PlanFunction>([
-  ['min', { usage: 'min(a, b)', doc: 'the least of its values', least: 1, most: 50, kindOf: numericAlike, run: (args) => Math.min(...args) }],
-  ['max', { usage: 'max(a, b)', doc: 'the greatest of its values', least: 1, most: 50, kindOf: numericAlike, run: (args) => Math.max(...args) }],
-  ['abs', { usage: 'abs(a)', doc: 'the value without its sign', least: 1, most: 1, kindOf: numericAlike, run: (args) => Math.abs(args[0] ?? NaN) }],
-  ['floor', rounding('floor(a, 5*mm)', 'rounds down to a multiple of the step, a plain number to a whole one', roundDownTo)],
-  ['ceil', rounding('ceil(a, 5*mm)', 'rounds up to a multiple of the step, a plain number to a whole one', roundUpTo)],
-  ['round', rounding('round(a, 5*mm)', 'rounds to the nearest multiple of the step, halves away from zero', roundTo)],
+  [
+    'min',
+    {
+      usage: 'min(a, b)',
+      doc: 'the least of its values',
+      least: 1,
+      most: 50,
+      kindOf: numericAlike,
+      run: (args) => Math.min(...args),
+    },
+  ],
+  [
+    'max',
+    {
+      usage: 'max(a, b)',
+      doc: 'the greatest of its values',
+      least: 1,
+      most: 50,
+      kindOf: numericAlike,
+      run: (args) => Math.max(...args),
+    },
+  ],
+  [
+    'abs',
+    {
+      usage: 'abs(a)',
+      doc: 'the value without its sign',
+      least: 1,
+      most: 1,
+      kindOf: numericAlike,
+      run: (args) => Math.abs(args[0] ?? NaN),
+    },
+  ],
+  [
+    'floor',
+    rounding(
+      'floor(a, 5*mm)',
+      'rounds down to a multiple of the step, a plain number to a whole one',
+      roundDownTo,
+    ),
+  ],
+  [
+    'ceil',
+    rounding(
+      'ceil(a, 5*mm)',
+      'rounds up to a multiple of the step, a plain number to a whole one',
+      roundUpTo,
+    ),
+  ],
+  [
+    'round',
+    rounding('round(a, 5*mm)', 'rounds to the nearest multiple of the step, halves away from zero', roundTo),
+  ],
   ['roundUp', rounding('roundUp(a, 5*mm)', 'rounds up to a multiple of the step', roundUpTo)],
   ['roundDown', rounding('roundDown(a, 5*mm)', 'rounds down to a multiple of the step', roundDownTo)],
   [
@@ -97,13 +152,44 @@ export const FUNCTIONS: ReadonlyMap<string, PlanFunction> = new Map<string, Plan
       doc: 'the square root; of an area it is a length',
       least: 1,
       most: 1,
-      kindOf: ([kind]) => (kind === 'number' ? 'number' : kind === 'area' ? 'length' : { wanted: 'a number or an area' }),
+      kindOf: ([kind]) =>
+        kind === 'number' ? 'number' : kind === 'area' ? 'length' : { wanted: 'a number or an area' },
       run: (args) => Math.sqrt(args[0] ?? NaN),
     },
   ],
-  ['hypot', { usage: 'hypot(a, b)', doc: 'the diagonal over its values', least: 1, most: 3, kindOf: numericAlike, run: (args) => Math.hypot(...args) }],
-  ['sin', { usage: 'sin(30*deg)', doc: 'sine of an angle', least: 1, most: 1, kindOf: toNumber('angle', 'number'), run: (args) => sine(args[0] ?? NaN) }],
-  ['cos', { usage: 'cos(30*deg)', doc: 'cosine of an angle', least: 1, most: 1, kindOf: toNumber('angle', 'number'), run: (args) => cosine(args[0] ?? NaN) }],
+  [
+    'hypot',
+    {
+      usage: 'hypot(a, b)',
+      doc: 'the diagonal over its values',
+      least: 1,
+      most: 3,
+      kindOf: numericAlike,
+      run: (args) => Math.hypot(...args),
+    },
+  ],
+  [
+    'sin',
+    {
+      usage: 'sin(30*deg)',
+      doc: 'sine of an angle',
+      least: 1,
+      most: 1,
+      kindOf: toNumber('angle', 'number'),
+      run: (args) => sine(args[0] ?? NaN),
+    },
+  ],
+  [
+    'cos',
+    {
+      usage: 'cos(30*deg)',
+      doc: 'cosine of an angle',
+      least: 1,
+      most: 1,
+      kindOf: toNumber('angle', 'number'),
+      run: (args) => cosine(args[0] ?? NaN),
+    },
+  ],
   [
     'tan',
     {
@@ -117,13 +203,47 @@ export const FUNCTIONS: ReadonlyMap<string, PlanFunction> = new Map<string, Plan
         const across = cosine(degrees);
         const tangent = Math.tan(degrees * RADIANS);
         if (across === 0) return Infinity;
-        return sine(degrees) === 0 ? 0 : Math.abs(Math.abs(tangent) - 1) < 1e-15 ? Math.sign(tangent) : tangent;
+        return sine(degrees) === 0
+          ? 0
+          : Math.abs(Math.abs(tangent) - 1) < 1e-15
+            ? Math.sign(tangent)
+            : tangent;
       },
     },
   ],
-  ['asin', { usage: 'asin(a)', doc: 'the angle of a sine', least: 1, most: 1, kindOf: toNumber('number', 'angle'), run: (args) => Math.asin(args[0] ?? NaN) / RADIANS }],
-  ['acos', { usage: 'acos(a)', doc: 'the angle of a cosine', least: 1, most: 1, kindOf: toNumber('number', 'angle'), run: (args) => Math.acos(args[0] ?? NaN) / RADIANS }],
-  ['atan', { usage: 'atan(a)', doc: 'the angle of a tangent', least: 1, most: 1, kindOf: toNumber('number', 'angle'), run: (args) => Math.atan(args[0] ?? NaN) / RADIANS }],
+  [
+    'asin',
+    {
+      usage: 'asin(a)',
+      doc: 'the angle of a sine',
+      least: 1,
+      most: 1,
+      kindOf: toNumber('number', 'angle'),
+      run: (args) => Math.asin(args[0] ?? NaN) / RADIANS,
+    },
+  ],
+  [
+    'acos',
+    {
+      usage: 'acos(a)',
+      doc: 'the angle of a cosine',
+      least: 1,
+      most: 1,
+      kindOf: toNumber('number', 'angle'),
+      run: (args) => Math.acos(args[0] ?? NaN) / RADIANS,
+    },
+  ],
+  [
+    'atan',
+    {
+      usage: 'atan(a)',
+      doc: 'the angle of a tangent',
+      least: 1,
+      most: 1,
+      kindOf: toNumber('number', 'angle'),
+      run: (args) => Math.atan(args[0] ?? NaN) / RADIANS,
+    },
+  ],
   [
     'atan2',
     {
@@ -141,7 +261,10 @@ export const FUNCTIONS: ReadonlyMap<string, PlanFunction> = new Map<string, Plan
 ]);
 
 /** Unit constants: the value of one, and its kind. */
-export const UNITS: ReadonlyMap<string, { kind: Kind; value: number }> = new Map<string, { kind: Kind; value: number }>([
+export const UNITS: ReadonlyMap<string, { kind: Kind; value: number }> = new Map<
+  string,
+  { kind: Kind; value: number }
+>([
   ['mm', { kind: 'length', value: 1_000_000 }],
   ['cm', { kind: 'length', value: 10_000_000 }],
   ['m', { kind: 'length', value: 1_000_000_000 }],

@@ -26,7 +26,9 @@ export function describeKind(kind: Kind | 'any'): string {
   if (typeof kind === 'string') return kind === 'any' ? 'anything' : WORDS[kind][0];
   const inner = kind.list;
   if (inner === 'any') return 'a list';
-  return typeof inner === 'string' ? `a list of ${WORDS[inner][1]}` : `a list of ${describeKind(inner).replace(/^a list/, 'lists')}`;
+  return typeof inner === 'string'
+    ? `a list of ${WORDS[inner][1]}`
+    : `a list of ${describeKind(inner).replace(/^a list/, 'lists')}`;
 }
 
 /** True when two kinds are the same; `any` inside a list agrees with everything. */
@@ -59,7 +61,8 @@ export function multiplyKinds(a: Kind, b: Kind): NumericKind | null {
 export function divideKinds(a: Kind, b: Kind): NumericKind | null {
   const left = POWERS.get(a);
   const right = POWERS.get(b);
-  if (left !== undefined && right !== undefined) return left >= right ? (BY_POWER[left - right] ?? null) : null;
+  if (left !== undefined && right !== undefined)
+    return left >= right ? (BY_POWER[left - right] ?? null) : null;
   if (isNumericKind(a) && b === 'number') return a;
   if (isNumericKind(a) && a === b) return 'number';
   return null;

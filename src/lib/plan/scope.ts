@@ -23,8 +23,15 @@ const WORDS_OF_THE_LANGUAGE = [
   'isPrototypeOf propertyIsEnumerable toLocaleString',
 ].flatMap((line) => line.split(' '));
 
-/** Names that no declaration may take: units, functions, and words that mean something to a parser. */
-export const RESERVED_NAMES: ReadonlySet<string> = new Set([...UNITS.keys(), ...FUNCTIONS.keys(), ...WORDS_OF_THE_LANGUAGE]);
+const RESERVED_NAMES: ReadonlySet<string> = new Set([...FUNCTIONS.keys(), ...WORDS_OF_THE_LANGUAGE]);
+
+/**
+ * True for names that a declaration may not take: functions, words that mean something to a parser, and units. Only a choice
+ * may be called like a unit, and only when its options are texts (a choice of `foot`): no formula can mistake the two.
+ */
+export function isReservedName(name: string, component: string | null | undefined): boolean {
+  return RESERVED_NAMES.has(name) || (UNITS.has(name) && component !== 'Choice');
+}
 
 /** True for a name that a formula can use: a letter, then letters, digits or underscores, 40 at most. */
 export function isName(text: string): boolean {

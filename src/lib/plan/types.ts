@@ -320,7 +320,7 @@ export interface CompiledPlan {
   front: FrontMatter;
   /** Every component, nested ones too (a Caution inside a Step), in the order of the file. */
   declarations: Declaration[];
-  /** The order in which derived values are worked out (names of lets, materials and marks). */
+  /** The order in which kept values are worked out: `bay`, `ply.thickness`, `A.length`. */
   order: string[];
   /** The prose of the file outside steps, in order, with the components standing in it. */
   body: Prose;
@@ -432,6 +432,8 @@ export interface ResolvedConsumable {
   coats: number;
   amount: number;
   unit: string;
+  /** Price of one unit, and the cost of the whole units to buy. */
+  price?: WrittenPrice;
   costMinor?: number;
 }
 export interface ResolvedTool {
@@ -470,6 +472,24 @@ export interface ResolvedShelf {
   guidance: string;
 }
 
+/** A drawing asked for; `index` is that of its declaration, as in the `place` node where it stands. */
+export interface ResolvedView {
+  index: number;
+  from: ViewDeclaration['from'];
+  /** Marks to show; all where empty. Parts that are left out at this fit are left out here. */
+  show: string[];
+  /** How far the parts are drawn apart, in nanometres. */
+  explode?: number;
+  step?: number;
+}
+/** A full-size template asked for, of a part that is cut at this fit. */
+export interface ResolvedTemplate {
+  index: number;
+  part: string;
+  /** Drawn size over real size. */
+  scale: number;
+}
+
 /** Prose with its values filled in: `value` carries the number so that a page can set real fractions. */
 export type ResolvedProseNode =
   | { node: 'paragraph' | 'quote' | 'emphasis' | 'strong' | 'strike'; children: ResolvedProseNode[] }
@@ -505,6 +525,9 @@ export interface ResolvedPlan {
   cautions: ResolvedCaution[];
   shelves: ResolvedShelf[];
   steps: ResolvedStep[];
+  views: ResolvedView[];
+  templates: ResolvedTemplate[];
+  /** The prose outside steps; tables that the author did not place are appended with the index −1. */
   body: ResolvedProse;
   /** Mass of all parts in kg, where every species is known. */
   massKg?: number;

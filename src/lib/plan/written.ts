@@ -48,7 +48,10 @@ export interface Coverage {
 }
 
 /** Square metres in one of each area, metres in one of each length, exact by definition of the foot. */
-const COVERS: ReadonlyMap<string, readonly ['m2' | 'm', number]> = new Map<string, readonly ['m2' | 'm', number]>([
+const COVERS: ReadonlyMap<string, readonly ['m2' | 'm', number]> = new Map<
+  string,
+  readonly ['m2' | 'm', number]
+>([
   ['m2', ['m2', 1]],
   ['m²', ['m2', 1]],
   ['sq ft', ['m2', 0.09290304]],
@@ -60,7 +63,9 @@ const COVERS: ReadonlyMap<string, readonly ['m2' | 'm', number]> = new Map<strin
 export function parseCoverage(text: string): Written<Coverage> {
   const hint = 'Write it as "10 m2/l" for a surface or "35 m/bottle" for a joint.';
   if (text.length > 40) return { ok: false, message: 'The coverage is too long.', hint };
-  const match = /^(\d{1,6}(?:\.\d{1,3})?) (m2|m²|sq ft|m|ft) ?\/ ?([\p{L}][\p{L} ]{0,19})$/u.exec(text.trim());
+  const match = /^(\d{1,6}(?:\.\d{1,3})?) (m2|m²|sq ft|m|ft) ?\/ ?([\p{L}][\p{L} ]{0,19})$/u.exec(
+    text.trim(),
+  );
   const covers = COVERS.get(match?.[2] ?? '');
   if (!match || !covers) return { ok: false, message: 'The coverage cannot be read.', hint };
   const amount = Number(match[1]) * covers[1];

@@ -33,7 +33,7 @@ export interface FormattedLength {
   denominator: number;
   /** The length less its reading, in nanometres: what was rounded away. */
   remainderNm: number;
-  /** True when the remainder is more than a quarter of a graduation, so that the reading alone would mislead. */
+  /** True when the remainder is more than a quarter of a graduation (and than 0.05 mm): the reading alone would mislead. */
   marked: boolean;
   /** `+` when the length is a little more than its reading (full), `−` when a little less (scant), else empty. */
   mark: '' | '+' | '−';
@@ -46,6 +46,8 @@ export const REMAINDER_LEGEND =
 const DEFAULT_DENOMINATOR: Denominator = 32;
 const DEFAULT_METRIC_STEP: MetricStep = 0.1;
 const MINUS = '−';
+/** A twentieth of a millimetre: finer than a saw, a pencil or a tape can tell, so no mark is owed for less. */
+const LEAST_MARKED_NM = 50_000;
 
 /** The size of one graduation in nanometres. */
 export function graduationNm(format: LengthFormat): number {
@@ -75,7 +77,7 @@ export function formatLength(nm: number, format: LengthFormat): FormattedLength 
   const reading = steps * graduation;
   const sign = exact < 0 && steps > 0 ? -1 : 1;
   const remainderNm = exact - (exact < 0 ? -reading : reading) || 0;
-  const marked = Math.abs(remainderNm) * 4 > graduation;
+  const marked = Math.abs(remainderNm) > Math.max(graduation / 4, LEAST_MARKED_NM);
   // A negative length that is a little more than it reads is further from zero: full, too.
   const isFull = exact < 0 ? remainderNm < 0 : remainderNm > 0;
   const mark = marked ? (isFull ? '+' : '−') : '';

@@ -9,7 +9,11 @@ export function parseAngle(text: string): ParsedAngle {
   const hint = 'Write it as 22.5°.';
   if (text.length > 40) return { ok: false, message: 'That is too long to be an angle.', hint };
   if (text.includes(',')) {
-    return { ok: false, message: 'A comma is not read.', hint: `Write a decimal point: ${text.trim().replace(',', '.')}.` };
+    return {
+      ok: false,
+      message: 'A comma is not read.',
+      hint: `Write a decimal point: ${text.trim().replace(',', '.')}.`,
+    };
   }
   const match = /^([-−]?)(\d{1,12}(?:\.\d{1,12})?|\.\d{1,12})\s?(?:°|deg|degrees?)?$/.exec(text.trim());
   if (!match) return { ok: false, message: 'The angle cannot be read.', hint };

@@ -17,7 +17,10 @@ const UNIT_WORDS: ReadonlyMap<string, LengthUnit> = new Map<string, LengthUnit>(
 ]);
 
 /** Single-character fractions of Unicode. */
-const VULGAR_FRACTIONS: ReadonlyMap<string, readonly [number, number]> = new Map<string, readonly [number, number]>([
+const VULGAR_FRACTIONS: ReadonlyMap<string, readonly [number, number]> = new Map<
+  string,
+  readonly [number, number]
+>([
   ['½', [1, 2]],
   ['⅓', [1, 3]],
   ['⅔', [2, 3]],
@@ -169,13 +172,18 @@ function readQuantity(tokens: readonly Token[], at: number): { ratio: Ratio; nex
   const fractionAt = at + (dash ? 2 : 1);
   const vulgar = tokens[fractionAt];
   if (vulgar?.type === 'vulgar') {
-    if (first.decimals > 0) return refuse('A decimal and a fraction cannot be mixed.', 'Write it as 17.75 or 17 3/4.');
-    return { ratio: add(whole, { over: BigInt(vulgar.over[0]), under: BigInt(vulgar.over[1]) }), next: fractionAt + 1 };
+    if (first.decimals > 0)
+      return refuse('A decimal and a fraction cannot be mixed.', 'Write it as 17.75 or 17 3/4.');
+    return {
+      ratio: add(whole, { over: BigInt(vulgar.over[0]), under: BigInt(vulgar.over[1]) }),
+      next: fractionAt + 1,
+    };
   }
   const mixed = readFraction(fractionAt);
   if (mixed === undefined) return { ratio: whole, next: at + 1 };
   if ('ok' in mixed) return mixed;
-  if (first.decimals > 0) return refuse('A decimal and a fraction cannot be mixed.', 'Write it as 17.75 or 17 3/4.');
+  if (first.decimals > 0)
+    return refuse('A decimal and a fraction cannot be mixed.', 'Write it as 17.75 or 17 3/4.');
   return { ratio: add(whole, mixed.ratio), next: mixed.next };
 }
 
@@ -201,7 +209,8 @@ export function parseLength(text: string, defaultUnit: LengthUnit): ParsedLength
   if (tokens.length === 0) return refuse('A length is missing.');
   if (tokens.some((token) => token.type === 'comma')) return refuseComma(text);
   const odd = tokens.find((token) => token.type === 'odd');
-  if (odd?.type === 'odd') return refuse(`“${odd.text}” is not a unit of length.`, 'Use mm, cm, m, in or ft.');
+  if (odd?.type === 'odd')
+    return refuse(`“${odd.text}” is not a unit of length.`, 'Use mm, cm, m, in or ft.');
 
   let at = 0;
   const isNegative = tokens[0]?.type === 'dash';
@@ -226,7 +235,8 @@ export function parseLength(text: string, defaultUnit: LengthUnit): ParsedLength
     next = inches.next;
     const inchUnit = tokens[next];
     if (inchUnit?.type === 'unit') {
-      if (inchUnit.unit !== 'in') return refuse('Feet are followed by inches only.', "Write it as 1' 5 3/4\".");
+      if (inchUnit.unit !== 'in')
+        return refuse('Feet are followed by inches only.', 'Write it as 1\' 5 3/4".');
       next += 1;
     }
     nm += toNm(inches.ratio, 'in');
