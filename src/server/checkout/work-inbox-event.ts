@@ -1,6 +1,7 @@
-import { Imprint, InboxEvent } from '#db/models/index.ts';
+import { InboxEvent } from '#db/models/index.ts';
 import { log } from '../log.ts';
 import { payments } from '../payments/client.ts';
+import { settlePaymentAccount } from '../sales/settle-payment-account.ts';
 import { settleOrder } from './settle-order.ts';
 import { settleRefunds } from './settle-refunds.ts';
 
@@ -24,15 +25,6 @@ async function settleDispute(disputeId: string): Promise<void> {
   const intent =
     typeof dispute.payment_intent === 'string' ? dispute.payment_intent : dispute.payment_intent?.id;
   if (intent) await settleRefunds(intent);
-}
-
-/** Whether the payment service would pay an imprint out, as it says now. */
-export async function settlePaymentAccount(accountId: string): Promise<void> {
-  const account = await payments.accounts.retrieve(accountId);
-  await Imprint.update(
-    { payoutsEnabled: account.payouts_enabled === true },
-    { where: { paymentAccountId: account.id } },
-  );
 }
 
 /** What each kind of event makes us ask the payment service about. Others are kept in the inbox and need nothing. */

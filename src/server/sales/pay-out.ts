@@ -3,6 +3,7 @@ import { sequelize } from '#db/client.ts';
 import { Imprint, Payout } from '#db/models/index.ts';
 import { paths } from '#lib/paths.ts';
 import type { Actor } from '../accounts/actor.ts';
+import { may } from '../accounts/may.ts';
 import { writeAudit } from '../audit/write-audit.ts';
 import { env } from '../env.ts';
 import { refuse } from '../errors.ts';
@@ -11,7 +12,8 @@ import { log } from '../log.ts';
 import { payments } from '../payments/client.ts';
 import { postLedger } from './post-ledger.ts';
 import { requireImprint } from './require-imprint.ts';
-import { sumImprint } from './sum-imprint.ts';
+import { settlePaymentAccount } from './settle-payment-account.ts';
+import { sumImprint, type ImprintBalance } from './sum-imprint.ts';
 
 const unavailable = (cause: unknown): never => {
   log.warn({ err: cause }, 'payment account could not be opened');
@@ -134,19 +136,44 @@ export interface PayoutView {
   createdAt: string;
 }
 
-/** The payouts of an imprint, newest first. @throws NOT_FOUND */
-export async function listPayouts(actor: Actor, slug: string): Promise<PayoutView[]> {
+export interface PayoutPage {
+  balances: ImprintBalance[];
+  payouts: PayoutView[];
+  isAccountOpen: boolean;
+  payoutsEnabled: boolean;
+  mayPayOut: boolean;
+}
+
+/**
+ * The payouts of an imprint, newest first, and what is owed. An account that is not ready yet is asked after, so that the owner who comes back
+ * from the payment service sees the truth.
+ * @throws NOT_FOUND to people who may not read the sales book
+ */
+export async function getPayoutPage(actor: Actor, slug: string): Promise<PayoutPage> {
   const imprint = await requireImprint(actor, slug, 'sales:read');
-  const payouts = await Payout.findAll({
-    where: { imprintId: imprint.id },
-    order: [['createdAt', 'DESC']],
-    limit: 100,
-  });
-  return payouts.map(({ id, amountMinor, currency, state, createdAt }) => ({
-    id,
-    amountMinor,
-    currency,
-    state,
-    createdAt: createdAt.toISOString(),
-  }));
+  if (imprint.paymentAccountId && !imprint.payoutsEnabled) {
+    try {
+      await settlePaymentAccount(imprint.paymentAccountId);
+      await imprint.reload();
+    } catch (error) {
+      log.warn({ err: error }, 'payment service did not answer');
+    }
+  }
+  const [balances, payouts] = await Promise.all([
+    sumImprint(imprint.id),
+    Payout.findAll({ where: { imprintId: imprint.id }, order: [['createdAt', 'DESC']], limit: 100 }),
+  ]);
+  return {
+    balances,
+    payouts: payouts.map(({ id, amountMinor, currency, state, createdAt }) => ({
+      id,
+      amountMinor,
+      currency,
+      state,
+      createdAt: createdAt.toISOString(),
+    })),
+    isAccountOpen: imprint.paymentAccountId !== null,
+    payoutsEnabled: imprint.payoutsEnabled,
+    mayPayOut: may(actor, 'payout:start', { imprintId: imprint.id }),
+  };
 }
