@@ -1,0 +1,79 @@
+import { boundSheets } from './sheet-bound.ts';
+import { buildSheetModel } from './sheet-model.ts';
+import { type FoundSheets, searchSheets } from './sheet-search.ts';
+import { traceTree } from './trace-tree.ts';
+import type { LaidPiece, LayOutOptions, Layout, SheetPart, SheetProblem, Unplaced } from './types.ts';
+
+const DEFAULT_STEPS = 20_000;
+
+/** Area of the largest offcut, and the number of cuts and of fence settings, by which layouts of one cost are told apart. */
+function judge(pieces: readonly LaidPiece[]): { largest: number; cuts: number } {
+  let largest = 0;
+  let cuts = 0;
+  for (const piece of pieces) {
+    cuts += piece.cuts.length;
+    const first = piece.offcuts[0];
+    if (first) largest = Math.max(largest, first.length * first.width);
+  }
+  return { largest, cuts };
+}
+
+/**
+ * Lays parts out on sheets or boards by cuts that go right through. In order: as many parts as can be, the least cost of new
+ * stock, the largest rectangle left over, the fewest cuts. Anytime and deterministic, see LayOutOptions.
+ * @throws Error when a size, kerf, trim, quantity or cost is not a whole number in its range.
+ */
+export function layOutSheets(problem: SheetProblem, options: LayOutOptions = {}): Layout {
+  const model = buildSheetModel(problem);
+  const bound = boundSheets(model);
+  const lowerBound = Number.isFinite(bound) ? bound : 0;
+  let best: Layout | null = null;
+
+  function toLayout(found: FoundSheets): Layout {
+    const pieces = found.trees.map((tree) => ({ stock: tree.stock, piece: traceTree(model, tree) }));
+    pieces.sort(
+      (a, b) =>
+        (model.cost[a.stock] as number) - (model.cost[b.stock] as number) ||
+        a.stock - b.stock ||
+        b.piece.yield - a.piece.yield,
+    );
+    const left = new Map<string, number>();
+    for (const unit of found.out) {
+      const id = (problem.parts[model.kindOf[unit] as number] as SheetPart).id;
+      left.set(id, (left.get(id) ?? 0) + 1);
+    }
+    const exhausted: Unplaced[] = [...left].map(([part, qty]) => ({ part, qty, reason: 'STOCK_EXHAUSTED' }));
+    const isWhole = exhausted.length === 0;
+    return {
+      kind: 'sheet',
+      pieces: pieces.map(({ piece }) => piece),
+      unplaced: [...model.refused, ...exhausted],
+      newCost: found.cost,
+      lowerBound: isWhole ? lowerBound : 0,
+      isProved: isWhole && found.cost <= lowerBound,
+      steps: found.steps,
+    };
+  }
+
+  function report(layout: Layout): void {
+    best = layout;
+    options.onBetter?.(layout);
+  }
+
+  searchSheets(model, {
+    seed: options.seed ?? 1,
+    steps: options.steps ?? DEFAULT_STEPS,
+    lowerBound,
+    shouldStop: options.shouldStop ?? (() => false),
+    onFound: (found) => report(toLayout(found)),
+    onGathered: (found) => {
+      const layout = toLayout(found);
+      const now = judge(layout.pieces);
+      const before = judge(best?.pieces ?? []);
+      if (now.largest > before.largest || (now.largest === before.largest && now.cuts < before.cuts))
+        report(layout);
+    },
+  });
+  if (!best) throw new Error('The search ended without a first answer.');
+  return best;
+}
