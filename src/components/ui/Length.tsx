@@ -18,8 +18,11 @@ export function Length({ length, isBare = false }: LengthProps) {
         {drawn.lead}
         {drawn.fraction ? (
           <span className="length__fraction">
-            <span>{drawn.fraction.over}</span>
-            <span>{drawn.fraction.under}</span>
+            <span
+              className="length__stack"
+              data-over={drawn.fraction.over}
+              data-under={drawn.fraction.under}
+            />
           </span>
         ) : (
           <span className={length.units === 'mm' ? 'length__decimals' : 'length__no-fraction'}>
