@@ -30,12 +30,11 @@ export interface RelaxedBars {
 const EPSILON = 1e-9;
 const MAX_PIVOTS = 3000;
 
-/** Solves the relaxation for the given numbers of parts and bars. `known` are patterns to try before new ones are made. */
+/** Solves the relaxation for the given numbers of parts and bars. */
 export function relaxBars(
   model: BarModel,
   wanted: readonly number[],
   count: readonly number[],
-  known: BarPattern[],
   shouldStop: () => boolean,
 ): RelaxedBars {
   const kinds = wanted.length;
@@ -72,7 +71,7 @@ export function relaxBars(
     level[r] = r < kinds ? (wanted[r] as number) : (count[limited[r - kinds] as number] as number);
     inverse[r * rows + r] = 1;
   }
-  const pool = known.map(toColumn);
+  const pool: Column[] = [];
   const price = new Float64Array(rows);
 
   function updatePrices(): void {
@@ -194,7 +193,6 @@ export function relaxBars(
         if (reduced < -1e-7 * dearest) {
           const column = toColumn(pattern);
           pool.push(column);
-          known.push(pattern);
           if (reduced < least) {
             least = reduced;
             entering = column;
@@ -230,42 +228,52 @@ export function roundUpCost(bound: number, cost: readonly number[]): number {
 }
 
 /**
- * Dives: fixes whole numbers of the relaxation's patterns, or rounds up the one that is nearest to whole, until every
- * part is cut. Gives the bars so filled, which may leave parts out where limited stock runs short.
+ * Dives: fixes whole numbers of the relaxation's patterns, or one of the patterns that are nearest to whole, until every part is
+ * cut. Gives the bars so filled, which may leave parts out where limited stock runs short. `random` lets one dive differ from
+ * the next: each pattern's fraction is blurred by up to `blur`.
  */
 export function diveBars(
   model: BarModel,
   first: RelaxedBars,
-  known: BarPattern[],
+  random: () => number,
+  blur: number,
   shouldStop: () => boolean,
 ): BarPattern[] {
   const wanted = model.wanted.slice();
   const count = model.count.slice();
   const fixed: BarPattern[] = [];
+
+  function fix(pattern: BarPattern, times: number): void {
+    for (let k = 0; k < times && (count[pattern.stock] as number) > 0; k++) {
+      const take = pattern.take.map((stretch) =>
+        stretch.map((n, kind) => {
+          const taken = Math.min(n, wanted[kind] as number);
+          wanted[kind] = (wanted[kind] as number) - taken;
+          return taken;
+        }),
+      );
+      if (take.every((stretch) => stretch.every((n) => n === 0))) return;
+      count[pattern.stock] = (count[pattern.stock] as number) - 1;
+      fixed.push({ stock: pattern.stock, take });
+    }
+  }
+
   let relaxed = first;
   while (wanted.some((n) => n > 0) && !shouldStop()) {
-    const list = relaxed.used.slice().sort((a, b) => (b.times % 1) - (a.times % 1));
-    let before = fixed.length;
-    const fix = (pattern: BarPattern, times: number) => {
-      for (let k = 0; k < times && (count[pattern.stock] as number) > 0; k++) {
-        const take = pattern.take.map((stretch) =>
-          stretch.map((n, i) => {
-            const taken = Math.min(n, wanted[i] as number);
-            wanted[i] = (wanted[i] as number) - taken;
-            return taken;
-          }),
-        );
-        if (take.every((stretch) => stretch.every((n) => n === 0))) return;
-        count[pattern.stock] = (count[pattern.stock] as number) - 1;
-        fixed.push({ stock: pattern.stock, take });
-      }
-    };
-    for (const { pattern, times } of list) fix(pattern, Math.floor(times + 1e-6));
-    const nearest = list[0] as { pattern: BarPattern; times: number };
-    if (fixed.length === before && nearest) fix(nearest.pattern, 1);
-    if (fixed.length === before) break;
-    before = fixed.length;
-    if (wanted.some((n) => n > 0)) relaxed = relaxBars(model, wanted, count, known, shouldStop);
+    const before = fixed.length;
+    for (const { pattern, times } of relaxed.used) fix(pattern, Math.floor(times + 1e-6));
+    if (fixed.length === before) {
+      const rated = relaxed.used.map(({ pattern, times }) => ({
+        pattern,
+        near: (times % 1) + blur * random(),
+      }));
+      const nearest = rated.sort((a, b) => b.near - a.near)[0] as { pattern: BarPattern; near: number };
+      if (!nearest) break;
+      fix(nearest.pattern, 1);
+      if (fixed.length === before) break;
+    }
+    // Patterns made for more parts than remain would mislead: each remainder makes its own.
+    if (wanted.some((n) => n > 0)) relaxed = relaxBars(model, wanted, count, shouldStop);
   }
   return fixed;
 }

@@ -1,12 +1,16 @@
-import { type BarPattern, diveBars, relaxBars, roundUpCost } from './bar-columns.ts';
+import { diveBars, relaxBars, roundUpCost } from './bar-columns.ts';
 import { buildBarModel } from './bar-model.ts';
 import { type FoundBars, createBarSearch } from './bar-search.ts';
+import { createRandom } from './random.ts';
 import { traceBar } from './trace-bar.ts';
 import type { BarPart, BarProblem, LayOutOptions, Layout, Unplaced } from './types.ts';
 
 const DEFAULT_STEPS = 10_000;
 /** Beyond this many kinds and limited bars the linear program costs more than it gives. */
 const MOST_ROWS = 150;
+/** Dives through the relaxation, each more blurred than the one before. */
+const MOST_DIVES = 12;
+const BLUR = 0.1;
 
 /**
  * Lays parts out along bars. In order: as many parts as can be, the least cost of new bars, the longest piece left over.
@@ -73,13 +77,15 @@ export function layOutBars(problem: BarProblem, options: LayOutOptions = {}): La
   search.start();
   const limited = model.isLimited.filter(Boolean).length;
   if (steps > 0 && model.size.length > 0 && model.size.length + limited <= MOST_ROWS) {
-    const known: BarPattern[] = [];
-    const relaxed = relaxBars(model, model.wanted, model.count, known, shouldStop);
+    const relaxed = relaxBars(model, model.wanted, model.count, shouldStop);
     lowerBound = roundUpCost(relaxed.bound, model.cost);
     searchOptions.lowerBound = lowerBound;
-    if (!search.isLeast()) search.take(diveBars(model, relaxed, known, shouldStop));
-    // The bound came after the first answer: say so where it settles it.
-    if (best && search.isLeast()) report(best);
+    const random = createRandom(options.seed ?? 1);
+    for (let dive = 0; dive < MOST_DIVES && !search.isLeast() && !shouldStop(); dive++) {
+      search.take(diveBars(model, relaxed, random, dive * BLUR, shouldStop));
+    }
+    // The bound came after the first answers: the best one may be settled by it.
+    if (best) report(best);
   }
   search.run();
   if (!best) throw new Error('The search ended without a first answer.');

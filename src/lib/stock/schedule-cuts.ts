@@ -51,7 +51,6 @@ export function scheduleCuts(
     name = `${number}a`;
   }
 
-  let stage: Waiting[] = [];
   let later: Waiting[] = [];
   function arrive(piece: BenchPiece, called: string, at: number): void {
     if (piece.split) later.push({ name: called, piece, next: 0, stage: at + 1 });
@@ -74,7 +73,7 @@ export function scheduleCuts(
   let fence = -1;
   let direction: Cut['direction'] = 'rip';
   while (later.length > 0) {
-    stage = later;
+    const stage = later;
     later = [];
     while (stage.length > 0) {
       const sizeOf = (w: Waiting) => {
