@@ -343,7 +343,7 @@ function combine(
   right: Expression,
   context: CheckContext,
 ): Expression | null {
-  let kind: Kind | null = null;
+  let kind: Kind | null;
   if (sign === '+' || sign === '-' || sign === '%') {
     kind = isNumericKind(left.kind) && left.kind === right.kind ? left.kind : null;
   } else if (sign === '*') kind = multiplyKinds(left.kind, right.kind);
