@@ -2,6 +2,7 @@ import { cleanup, fireEvent, render, screen } from '@testing-library/react';
 import { afterEach, describe, expect, it, vi } from 'vitest';
 import { ChangeBar } from '#components/ui/ChangeBar.tsx';
 import { ChoiceField } from '#components/ui/ChoiceField.tsx';
+import { followUnits } from '#components/ui/follow-units.ts';
 import { lightParts } from '#components/ui/light-parts.ts';
 import { Money } from '#components/ui/Money.tsx';
 import { Notice } from '#components/ui/Notice.tsx';
@@ -40,6 +41,44 @@ describe('the units switch', () => {
     expect(onChange).not.toHaveBeenCalled();
     fireEvent.click(screen.getByRole('button', { name: 'Millimetres' }));
     expect(onChange).toHaveBeenCalledExactlyOnceWith('mm');
+  });
+});
+
+describe('the units links of the title block', () => {
+  function renderLinks() {
+    render(
+      <>
+        <a href="?width=900&units=in" data-units="in" aria-current="true">
+          in
+        </a>
+        <a href="?width=900&units=mm" data-units="mm">
+          mm
+        </a>
+      </>,
+    );
+  }
+
+  it('are followed in place: the island is told, the link marked, the address kept', () => {
+    window.history.replaceState(null, '', '/plans/alcove-chest?width=900&units=in');
+    renderLinks();
+    const onChange = vi.fn();
+    const stop = followUnits(document, onChange);
+    expect(fireEvent.click(screen.getByText('mm'))).toBe(false);
+    expect(onChange).toHaveBeenCalledExactlyOnceWith('mm');
+    expect(screen.getByText('mm').getAttribute('aria-current')).toBe('true');
+    expect(screen.getByText('in').hasAttribute('aria-current')).toBe(false);
+    expect(window.location.search).toBe('?width=900&units=mm');
+    stop();
+  });
+
+  it('keep their own meaning for a click that opens a tab, and once nobody follows', () => {
+    renderLinks();
+    const onChange = vi.fn();
+    const stop = followUnits(document, onChange);
+    fireEvent.click(screen.getByText('mm'), { ctrlKey: true });
+    stop();
+    fireEvent.click(screen.getByText('mm'), { shiftKey: true });
+    expect(onChange).not.toHaveBeenCalled();
   });
 });
 

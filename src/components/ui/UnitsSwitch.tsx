@@ -6,7 +6,10 @@ interface UnitsSwitchProps {
   onChange: (units: UnitSystem) => void;
 }
 
-/** Inches or millimetres, switched live. It stands in the title block and nowhere else; twin of sheet/UnitsLinks.astro. */
+/**
+ * Inches or millimetres, for a view that an island draws whole, title block and all. Under an Astro title block use its
+ * own links and `followUnits` instead: units are switched in the title block and nowhere else.
+ */
 export function UnitsSwitch({ units, onChange }: UnitsSwitchProps) {
   return (
     <span className="units" role="group" aria-label="Units">
