@@ -17,6 +17,7 @@ export const paths = {
   plan: (slug: string, query?: Record<string, string | number | undefined>) =>
     withQuery(`/plans/${part(slug)}`, query),
   planFitCheck: (slug: string) => `/api/plans/${part(slug)}/fit`,
+  planVisits: (slug: string) => `/api/plans/${part(slug)}/visits`,
   imprint: (slug: string) => `/imprints/${part(slug)}`,
   source: (slug: string, planSlug: string) => withQuery(`/plans/${part(planSlug)}`, { from: slug }),
   picture: (sha256: string, width?: number) => withQuery(`/pictures/${part(sha256)}`, { w: width }),
@@ -52,6 +53,8 @@ export const paths = {
   drawer: () => '/drawer',
   licence: (licenceId: string, query?: { fit?: string }) => withQuery(`/drawer/${part(licenceId)}`, query),
   copies: (licenceId: string) => `/api/licences/${part(licenceId)}/copies`,
+  fits: (licenceId: string) => `/api/licences/${part(licenceId)}/fits`,
+  build: (licenceId: string) => `/api/licences/${part(licenceId)}/build`,
   copy: (copyId: string) => `/drawer/copies/${part(copyId)}`,
   copyState: (copyId: string) => `/api/copies/${part(copyId)}`,
   copyDownload: (copyId: string) => `/api/copies/${part(copyId)}/download`,

@@ -13,12 +13,13 @@ import {
 import { defaultFit } from '#lib/plan/check-fit.ts';
 import { publicFigures, type PublicFigures } from '#lib/plan/public-figures.ts';
 import { resolvePlan } from '#lib/plan/resolve.ts';
-import type { Fit, FrontMatter, ResolvedProse, UnitSystem } from '#lib/plan/types.ts';
-import { checkFit } from '#lib/plan/check-fit.ts';
+import type { CompiledPlan, Fit, FrontMatter, ResolvedProse, UnitSystem } from '#lib/plan/types.ts';
+import { readFitQuery } from '#lib/plan/fit-query.ts';
 import { allowedStretches, type Stretch } from '#lib/plan/allowed-stretches.ts';
 import type { Actor } from '../accounts/actor.ts';
 import { requireMay } from '../accounts/may.ts';
 import { refuse } from '../errors.ts';
+import { requireFit } from '../licences/require-fit.ts';
 import { getCompiledPlan } from '../publishing/get-compiled-plan.ts';
 import { publicStory } from '../publishing/public-story.ts';
 
@@ -28,7 +29,7 @@ export interface PublicFit {
   figures: PublicFigures;
   /** For each size the stretches of its range that a requirement excludes, with the sentence that says why. */
   stretches: Record<string, Stretch[]>;
-  /** Sizes that were sent and could not be taken, each with its sentence; the fit has the default there. */
+  /** Form fields that could not be taken, each with its sentence; the fit has the default there. */
   refused: Record<string, string>;
 }
 
@@ -63,25 +64,32 @@ export interface PlanPage {
   builds: { id: string; by: string; body: string; verdict: number; at: string }[];
 }
 
-/**
- * Works out what a visitor may see at these sizes. Nothing else of the plan leaves this function: no part, position, formula, step or layout.
- */
-export async function fitForVisitor(
-  revisionId: string,
-  input: unknown,
-  units: UnitSystem,
-): Promise<PublicFit> {
-  const plan = await getCompiledPlan(revisionId);
-  const fallback = defaultFit(plan, units);
-  const checked = input === null ? { ok: true as const, fit: fallback } : checkFit(plan, input);
-  const fit = checked.ok ? checked.fit : fallback;
-  const refused = checked.ok
-    ? {}
-    : Object.fromEntries(checked.problems.map((problem) => [problem.name, problem.message]));
+/** What a visitor may see at a fit that the plan allows. */
+function lookAt(plan: CompiledPlan, fit: Fit, refused: Record<string, string>): PublicFit {
   const figures = publicFigures(resolvePlan(plan, fit));
   const stretches: Record<string, Stretch[]> = {};
   for (const size of figures.sizes) stretches[size.name] = allowedStretches(plan, fit, size.name);
   return { fit, figures, stretches, refused };
+}
+
+/**
+ * Works out what a visitor may see at the sizes in an address. Nothing else of the plan leaves this function: no part, position, formula, step or layout.
+ */
+export function fitFromQuery(
+  plan: CompiledPlan,
+  query: Readonly<Record<string, string>>,
+  units: UnitSystem,
+): PublicFit {
+  const read = readFitQuery(plan, query, units);
+  const filled = { ...read.fit, values: { ...defaultFit(plan, units).values, ...read.fit.values } };
+  return lookAt(plan, filled, read.refused);
+}
+
+/** The same for a fit that an island sends. @throws BAD_INPUT naming the sizes at fault */
+export async function fitForVisitor(revisionId: string, input: unknown): Promise<PublicFit> {
+  const fit = await requireFit(revisionId, input);
+  const plan = await getCompiledPlan(revisionId);
+  return lookAt(plan, fit, {});
 }
 
 /** Finds a published plan's revision for the fit endpoint. @throws NOT_FOUND */
@@ -99,13 +107,13 @@ const pictureOf = ({ sha256, width, height }: Asset) => ({ sha256, width, height
 
 /**
  * The page of a published plan, at the visitor's sizes.
- * @param fitInput sizes from the address or null for the defaults
+ * @param query the page's address, with sizes as `readFitQuery` reads them
  * @throws NOT_FOUND when there is no such plan for this person
  */
 export async function getPlanPage(options: {
   actor: Actor;
   slug: string;
-  fitInput: unknown;
+  query: Readonly<Record<string, string>>;
   units: UnitSystem;
 }): Promise<PlanPage> {
   const { actor, slug } = options;
@@ -177,7 +185,7 @@ export async function getPlanPage(options: {
       currency,
       pieces,
     })),
-    public: await fitForVisitor(plan.currentRevisionId, options.fitInput, options.units),
+    public: fitFromQuery(compiled, options.query, options.units),
     owned: licences.map((licence) => ({ licenceId: licence.id, kind: licence.kind })),
     questions: questions.map((question) => ({
       id: question.id,

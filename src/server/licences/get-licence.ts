@@ -1,4 +1,5 @@
-import { Copy, Imprint, Licence, Plan, Revision, SavedFit } from '#db/models/index.ts';
+import { Asset, Copy, Imprint, Licence, Plan, Revision, SavedFit } from '#db/models/index.ts';
+import { paths } from '#lib/paths.ts';
 import type { CompiledPlan } from '#lib/plan/types.ts';
 import type { Actor } from '../accounts/actor.ts';
 import { may } from '../accounts/may.ts';
@@ -24,6 +25,18 @@ export interface LicencePage {
   compiled: CompiledPlan | null;
   fits: SavedFitView[];
   copies: CopyView[];
+  /** The revision's pictures by the name that its text uses. */
+  pictures: Record<string, { href: string; width: number; height: number }>;
+}
+
+async function listPictures(revisionId: string): Promise<LicencePage['pictures']> {
+  const assets = await Asset.findAll({ where: { revisionId } });
+  return Object.fromEntries(
+    assets.map(({ name, sha256, width, height }) => [
+      name,
+      { href: paths.picture(sha256, 960), width, height },
+    ]),
+  );
 }
 
 /**
@@ -80,5 +93,6 @@ export async function getLicence(actor: Actor, licenceId: string): Promise<Licen
     compiled: isUsable ? await getCompiledPlan(revision.id) : null,
     fits: fits.map(viewFit),
     copies: copies.map((copy) => viewCopy(copy)),
+    pictures: isUsable ? await listPictures(revision.id) : {},
   };
 }

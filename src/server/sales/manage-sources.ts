@@ -49,12 +49,13 @@ export async function createSource(options: {
   });
 }
 
-/** Counts a visit that came by a tracked link, or by none, in the rollup of the day (UTC). */
-export async function countVisit(planId: string, sourceSlug: string | null): Promise<void> {
+/** Counts a visit of a published plan's page that came by a tracked link of its imprint, or by none, in the rollup of the day (UTC). */
+export async function countVisit(planSlug: string, sourceSlug: string | null): Promise<void> {
   await sequelize.query(
     `insert into visit_days (plan_id, source_id, day, visits)
-     select :planId, (select s.id from sources s join plans p on p.imprint_id = s.imprint_id where s.slug = :slug and p.id = :planId), (now() at time zone 'UTC')::date, 1
+     select p.id, (select s.id from sources s where s.slug = :source and s.imprint_id = p.imprint_id), (now() at time zone 'UTC')::date, 1
+     from plans p where p.slug = :plan and p.state = 'published'
      on conflict (plan_id, day, source_id) do update set visits = visit_days.visits + 1`,
-    { replacements: { planId, slug: sourceSlug ?? '' }, type: QueryTypes.INSERT },
+    { replacements: { plan: planSlug, source: sourceSlug ?? '' }, type: QueryTypes.INSERT },
   );
 }

@@ -1,0 +1,61 @@
+import { ChangeBar } from '#components/ui/ChangeBar.tsx';
+import { DataTable } from '#components/ui/DataTable.tsx';
+import { Length } from '#components/ui/Length.tsx';
+import { PartMark } from '#components/ui/PartMark.tsx';
+import { lengthFormat } from '#components/plan/length-format.ts';
+import type { ResolvedMaterial, ResolvedPart, UnitSystem } from '#lib/plan/types.ts';
+import { formatLength } from '#lib/units/format-length.ts';
+
+interface PartsTableProps {
+  parts: readonly ResolvedPart[];
+  materials: readonly ResolvedMaterial[];
+  units: UnitSystem;
+}
+
+/** Every part with its finished sizes, length by width by thickness; a figure that has just changed is marked in the margin. */
+export function PartsTable({ parts, materials, units }: PartsTableProps) {
+  const labels = new Map(materials.map((material) => [material.name, material.label]));
+  const unit = units === 'in' ? 'in' : 'mm';
+  const size = (nm: number, head: string) => (
+    <td className="is-figure" data-head={head}>
+      <Length length={formatLength(nm, lengthFormat(units))} isBare />
+    </td>
+  );
+  return (
+    <DataTable caption="Parts table">
+      <thead>
+        <tr>
+          <th scope="col" className="is-narrow">
+            Mark
+          </th>
+          <th scope="col">Part</th>
+          <th scope="col">Material</th>
+          <th scope="col" className="is-figure">
+            Qty
+          </th>
+          {['Length', 'Width', 'Thickness'].map((head) => (
+            <th key={head} scope="col" className="is-figure">
+              {head} <span className="data-table__unit">{unit}</span>
+            </th>
+          ))}
+        </tr>
+      </thead>
+      <tbody>
+        {parts.map((part) => (
+          <tr key={part.mark} data-mark={part.mark}>
+            <td className="is-narrow change-bar-place">
+              <ChangeBar of={`${part.qty} ${part.length} ${part.width} ${part.thickness}`} />
+              <PartMark mark={part.mark} name={part.name} />
+            </td>
+            <td>{part.name}</td>
+            <td>{labels.get(part.material) ?? part.material}</td>
+            <td className="is-figure">{part.qty}</td>
+            {size(part.length, 'Length')}
+            {size(part.width, 'Width')}
+            {size(part.thickness, 'Thickness')}
+          </tr>
+        ))}
+      </tbody>
+    </DataTable>
+  );
+}

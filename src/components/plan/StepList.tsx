@@ -1,0 +1,40 @@
+import { useMemo } from 'react';
+import { useUnits } from '#components/fitting/unit-choice.ts';
+import { PartMark } from '#components/ui/PartMark.tsx';
+import { resolvePlan } from '#lib/plan/resolve.ts';
+import type { CompiledPlan, Fit } from '#lib/plan/types.ts';
+import { ProseView, type ShownPicture } from './ProseView.tsx';
+
+interface StepListProps {
+  plan: CompiledPlan;
+  initialFit: Fit;
+  pictures: Record<string, ShownPicture>;
+}
+
+/** The steps in order, with their values in the reader's units. */
+export function StepList({ plan, initialFit, pictures }: StepListProps) {
+  const units = useUnits(initialFit.units);
+  const steps = useMemo(() => resolvePlan(plan, { ...initialFit, units }).steps, [plan, initialFit, units]);
+  return (
+    <ol className="step-list">
+      {steps.map((step) => (
+        <li key={step.number} className="step-list__step">
+          <h3>
+            <span className="section__number">{step.number}</span> {step.title}
+          </h3>
+          <p className="small secondary">
+            {step.parts.map((mark) => (
+              <PartMark key={mark} mark={mark} />
+            ))}{' '}
+            {[step.tools.join(', '), step.minutes ? `about ${step.minutes} minutes` : '']
+              .filter(Boolean)
+              .join('; ')}
+          </p>
+          <div className="prose">
+            <ProseView prose={step.body} units={units} pictures={pictures} headingLevel={4} />
+          </div>
+        </li>
+      ))}
+    </ol>
+  );
+}
