@@ -4,6 +4,8 @@ import { MeasuredFields } from '#components/fitting/MeasuredFields.tsx';
 import { RequirementList } from '#components/fitting/RequirementList.tsx';
 import { SizeFields } from '#components/fitting/SizeFields.tsx';
 import { useUnits } from '#components/fitting/unit-choice.ts';
+import type { ShownPicture } from '#components/plan/ProseView.tsx';
+import { StepList } from '#components/plan/StepList.tsx';
 import { ChoiceField } from '#components/ui/ChoiceField.tsx';
 import { Notice } from '#components/ui/Notice.tsx';
 import { allowedStretches, type Stretch } from '#lib/plan/allowed-stretches.ts';
@@ -25,6 +27,7 @@ interface LicenceFittingProps {
   refused: Record<string, string>;
   fits: SavedFitView[];
   copies: CopyView[];
+  pictures: Record<string, ShownPicture>;
 }
 
 const client = new QueryClient();
@@ -64,6 +67,7 @@ function Fitting({
   refused: initialRefused,
   fits: initialFits,
   copies: initialCopies,
+  pictures,
 }: LicenceFittingProps) {
   const units = useUnits(initialFit.units);
   const [chosen, setChosen] = useState(initialFit);
@@ -244,6 +248,12 @@ function Fitting({
           </Notice>
         ) : null}
         <CopyList copies={copies} isUsable />
+      </section>
+      <section className="section" aria-labelledby="steps-title">
+        <div className="section__head">
+          <h2 id="steps-title">Steps</h2>
+        </div>
+        <StepList steps={resolved.steps} units={units} pictures={pictures} />
       </section>
     </>
   );

@@ -1,20 +1,15 @@
-import { useMemo } from 'react';
-import { useUnits } from '#components/fitting/unit-choice.ts';
 import { PartMark } from '#components/ui/PartMark.tsx';
-import { resolvePlan } from '#lib/plan/resolve.ts';
-import type { CompiledPlan, Fit } from '#lib/plan/types.ts';
+import type { ResolvedStep, UnitSystem } from '#lib/plan/types.ts';
 import { ProseView, type ShownPicture } from './ProseView.tsx';
 
 interface StepListProps {
-  plan: CompiledPlan;
-  initialFit: Fit;
-  pictures: Record<string, ShownPicture>;
+  steps: readonly ResolvedStep[];
+  units: UnitSystem;
+  pictures: Readonly<Record<string, ShownPicture>>;
 }
 
 /** The steps in order, with their values in the reader's units. */
-export function StepList({ plan, initialFit, pictures }: StepListProps) {
-  const units = useUnits(initialFit.units);
-  const steps = useMemo(() => resolvePlan(plan, { ...initialFit, units }).steps, [plan, initialFit, units]);
+export function StepList({ steps, units, pictures }: StepListProps) {
   return (
     <ol className="step-list">
       {steps.map((step) => (
