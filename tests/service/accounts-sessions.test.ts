@@ -203,16 +203,16 @@ describe('a session', () => {
 
   it('costs two queries to know, and none without a cookie', async () => {
     const headers = await signInAs(await makePerson());
-    const logging = vi.fn();
-    sequelize.options.logging = logging;
+    const count = vi.fn();
+    sequelize.addHook('beforeQuery', 'count', count);
     try {
       await findActor(headers);
-      expect(logging).toHaveBeenCalledTimes(2);
-      logging.mockClear();
+      expect(count).toHaveBeenCalledTimes(2);
+      count.mockClear();
       await findActor(new Headers());
-      expect(logging).not.toHaveBeenCalled();
+      expect(count).not.toHaveBeenCalled();
     } finally {
-      sequelize.options.logging = false;
+      sequelize.removeHook('beforeQuery', 'count');
     }
   });
 });

@@ -22,7 +22,10 @@ const hash = (token: string) => createHash('sha256').update(token).digest('hex')
 
 /** Keeps what was typed, and what to say about it, for the next page of this browser. */
 export async function rememberForm(cookies: AstroCookies, memory: FormMemory): Promise<void> {
-  const data = JSON.stringify(memory);
+  // The database takes no NUL, and a refused form must not fail for what it was refused for.
+  const data = JSON.stringify(memory, (_key, value: unknown) =>
+    typeof value === 'string' ? value.replaceAll('\0', '') : value,
+  );
   // Larger texts come from the plan editor, which keeps its own.
   if (data.length > MAX_CHARACTERS) return;
   const token = randomBytes(24).toString('base64url');
