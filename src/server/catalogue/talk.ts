@@ -108,3 +108,22 @@ export async function writeBuild(options: {
       ...content,
     });
 }
+
+/** The questions on a plan with their answers, newest first, for the people who answer them. The caller has checked the right. */
+export async function listQuestions(
+  planId: string,
+): Promise<{ id: string; by: string; body: string; at: string; answers: { by: string; body: string }[] }[]> {
+  const questions = await Question.findAll({
+    where: { planId },
+    include: [{ model: Answer, as: 'answers', separate: true, order: [['createdAt', 'ASC']] }],
+    order: [['createdAt', 'DESC']],
+    limit: 50,
+  });
+  return questions.map((question) => ({
+    id: question.id,
+    by: question.authorName,
+    body: question.body,
+    at: question.createdAt.toISOString(),
+    answers: (question.answers ?? []).map((answer) => ({ by: answer.authorName, body: answer.body })),
+  }));
+}
