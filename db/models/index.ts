@@ -188,3 +188,4 @@ export {
   Verification,
   VisitDay,
 };
+export type { OrderState } from './order.ts';

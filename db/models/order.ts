@@ -15,6 +15,9 @@ import type { Refund } from './refund.ts';
 import type { Source } from './source.ts';
 import type { User } from './user.ts';
 
+/** How far an order has come. */
+export type OrderState = 'pending' | 'paid' | 'partly_refunded' | 'refunded' | 'expired' | 'failed';
+
 /** A purchase. */
 export class Order extends Model<InferAttributes<Order>, InferCreationAttributes<Order>> {
   declare id: CreationOptional<string>;
@@ -22,7 +25,7 @@ export class Order extends Model<InferAttributes<Order>, InferCreationAttributes
   declare userId: CreationOptional<string | null>;
   declare email: string;
   declare name: string;
-  declare state: CreationOptional<'pending' | 'paid' | 'partly_refunded' | 'refunded' | 'expired' | 'failed'>;
+  declare state: CreationOptional<OrderState>;
   declare currency: string;
   declare subtotalMinor: number;
   declare discountMinor: CreationOptional<number>;

@@ -1,4 +1,4 @@
-import { Licence, Order, OrderLine, Plan, Refund } from '#db/models/index.ts';
+import { Licence, Order, OrderLine, Plan, Refund, type OrderState } from '#db/models/index.ts';
 import { Op } from 'sequelize';
 import type { Actor } from '../accounts/actor.ts';
 import { requireMay, requireUser } from '../accounts/may.ts';
@@ -9,7 +9,7 @@ import { settleOrder } from './settle-order.ts';
 export interface OrderView {
   id: string;
   number: number;
-  state: Order['state'];
+  state: OrderState;
   currency: string;
   subtotalMinor: number;
   discountMinor: number;

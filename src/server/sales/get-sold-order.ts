@@ -1,4 +1,4 @@
-import { Order, OrderLine, Plan, Refund, Source, Code, Licence } from '#db/models/index.ts';
+import { Order, OrderLine, Plan, Refund, Source, Code, Licence, type OrderState } from '#db/models/index.ts';
 import type { Actor } from '../accounts/actor.ts';
 import { may } from '../accounts/may.ts';
 import { refuse } from '../errors.ts';
@@ -9,7 +9,7 @@ export interface SoldOrder {
   imprintName: string;
   id: string;
   number: number;
-  state: Order['state'];
+  state: OrderState;
   currency: string;
   totalMinor: number;
   refundedMinor: number;

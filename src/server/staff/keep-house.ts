@@ -1,5 +1,5 @@
 import { Op } from 'sequelize';
-import { Imprint, ImprintMember, Order, OutboxEmail, Plan, User } from '#db/models/index.ts';
+import { Imprint, ImprintMember, Order, OutboxEmail, Plan, User, type OrderState } from '#db/models/index.ts';
 import type { Actor } from '../accounts/actor.ts';
 import { requireMay } from '../accounts/may.ts';
 import { writeAudit } from '../audit/write-audit.ts';
@@ -21,7 +21,7 @@ export interface StaffPage {
     id: string;
     number: number;
     email: string;
-    state: Order['state'];
+    state: OrderState;
     totalMinor: number;
     refundedMinor: number;
     currency: string;
