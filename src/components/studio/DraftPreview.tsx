@@ -4,6 +4,7 @@ import { MeasuredFields } from '#components/fitting/MeasuredFields.tsx';
 import { PublicResults } from '#components/fitting/PublicResults.tsx';
 import { RequirementList } from '#components/fitting/RequirementList.tsx';
 import { SizeFields } from '#components/fitting/SizeFields.tsx';
+import { useUnits } from '#components/fitting/unit-choice.ts';
 import { StepList } from '#components/plan/StepList.tsx';
 import { allowedStretches } from '#lib/plan/allowed-stretches.ts';
 import { defaultFit } from '#lib/plan/check-fit.ts';
@@ -19,7 +20,8 @@ interface DraftPreviewProps {
 }
 
 /** The draft as a buyer would see it, at sizes that the author can move. */
-export function DraftPreview({ plan, units, pictures }: DraftPreviewProps) {
+export function DraftPreview({ plan, units: initialUnits, pictures }: DraftPreviewProps) {
+  const units = useUnits(initialUnits);
   const [values, setValues] = useState<Fit['values']>({});
   const [measured, setMeasured] = useState<Fit['measured']>({});
   // Sizes that the text no longer declares are forgotten without a word; the author is in the middle of writing.

@@ -1,4 +1,5 @@
 import { useEffect, useRef, useState } from 'react';
+import * as z from 'zod/mini';
 import { Notice } from '#components/ui/Notice.tsx';
 import { useUnits } from '#components/fitting/unit-choice.ts';
 import type { ShownPicture } from '#components/plan/ProseView.tsx';
@@ -18,6 +19,9 @@ interface StudioProps {
 
 type SaveState =
   { state: 'saved' } | { state: 'changed' } | { state: 'saving' } | { state: 'refused'; message: string };
+
+/** What the server says to a saved draft, or why it was not taken. */
+const savedSchema = z.object({ version: z.optional(z.number()), detail: z.optional(z.string()) });
 
 const SEVERITY_WORDS = { error: 'To mend', warning: 'Look at this', advice: 'Advice' } as const;
 
@@ -46,18 +50,14 @@ export function Studio({
         headers: { 'content-type': 'application/json' },
         body: JSON.stringify({ source, version: version.current }),
       });
-      const body: unknown = await response.json();
-      const has = <Key extends string>(key: Key): body is Record<Key, unknown> =>
-        typeof body === 'object' && body !== null && key in body;
-      if (response.ok && has('version')) {
-        version.current = Number(body.version);
+      const answer = savedSchema.safeParse(await response.json());
+      if (response.ok && answer.data?.version) {
+        version.current = answer.data.version;
         setSaving({ state: 'saved' });
       } else {
         setSaving({
           state: 'refused',
-          message: has('detail')
-            ? String(body.detail)
-            : 'The server did not take it. Your text is still here.',
+          message: answer.data?.detail ?? 'The server did not take it. Your text is still here.',
         });
       }
     } catch {
