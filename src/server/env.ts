@@ -38,6 +38,8 @@ const envSchema = z
     STRIPE_WEBHOOK_SECRET: z.string().min(1),
     /** Base address of the payment service's API; left out for the real one. */
     STRIPE_API_BASE: z.url().optional(),
+    /** Folder of the built site. */
+    BENCHLEAF_DIST: z.string().default('dist/site'),
     LOG_LEVEL: z.enum(['silent', 'error', 'warn', 'info', 'debug']).default('info'),
     /** `yes` lets the local secrets of `npm start` and the demo accounts stand; never set it on a public site. */
     DEMO: z

@@ -1,5 +1,5 @@
 import { Op } from 'sequelize';
-import { Session } from '#db/models/index.ts';
+import { Session, Verification } from '#db/models/index.ts';
 import { refuse } from '../errors.ts';
 import type { SignedInUser } from './actor.ts';
 
@@ -53,4 +53,10 @@ export async function revokeSession(options: { actor: SignedInUser; sessionId: s
 /** Signs every browser out except the one that asks. @returns how many */
 export async function revokeOtherSessions(actor: SignedInUser): Promise<number> {
   return Session.destroy({ where: { userId: actor.id, id: { [Op.ne]: actor.sessionId } } });
+}
+
+/** Removes sessions and link secrets that have run out. @returns how many */
+export async function sweepSessions(): Promise<number> {
+  const where = { expiresAt: { [Op.lt]: new Date() } };
+  return (await Session.destroy({ where })) + (await Verification.destroy({ where }));
 }

@@ -48,12 +48,14 @@ export const tasks: TaskList = {
     await sweepOrders();
   },
   'sweep-rows': async () => {
-    const [{ sweepFormMemories }, { sweepRateLimits }] = await Promise.all([
+    const [{ sweepFormMemories }, { sweepRateLimits }, { sweepSessions }] = await Promise.all([
       import('../http/form-memory.ts'),
       import('../accounts/rate-limit.ts'),
+      import('../accounts/sessions.ts'),
     ]);
     await sweepFormMemories();
     await sweepRateLimits();
+    await sweepSessions();
   },
 };
 
