@@ -92,6 +92,14 @@ describe('moving an account to another address', () => {
     expect(await open(await readMailedToken(newEmail, 'verify-email'))).toBe('TOKEN_SPENT');
   });
 
+  it('is off when the account has another address by now', async () => {
+    const person = await makePerson();
+    const newEmail = makeAddress();
+    await start(person, newEmail);
+    await User.update({ email: makeAddress() }, { where: { id: person.id } });
+    expect(await open(await readMailedToken(newEmail, 'verify-email'))).toBe('TOKEN_SPENT');
+  });
+
   it('runs out after a day', async () => {
     const person = await makePerson();
     const newEmail = makeAddress();

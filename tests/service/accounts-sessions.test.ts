@@ -7,7 +7,12 @@ import { changePassword } from '#server/accounts/change-password.ts';
 import { requestPasswordReset } from '#server/accounts/request-password-reset.ts';
 import { requestVerification } from '#server/accounts/request-verification.ts';
 import { resetPassword } from '#server/accounts/reset-password.ts';
-import { listSessions, revokeOtherSessions, revokeSession } from '#server/accounts/sessions.ts';
+import {
+  listSessions,
+  revokeOtherSessions,
+  revokeSession,
+  sweepSessions,
+} from '#server/accounts/sessions.ts';
 import { signIn } from '#server/accounts/sign-in.ts';
 import { signOut } from '#server/accounts/sign-out.ts';
 import { signUp } from '#server/accounts/sign-up.ts';
@@ -159,6 +164,16 @@ describe('a session', () => {
     expect(days).toBeCloseTo(30, 2);
     await session.update({ expiresAt: new Date(Date.now() - 1_000) });
     expect(await kindOf(headers)).toBe('visitor');
+  });
+
+  it('is swept once it has run out, and not before', async () => {
+    const person = await makePerson();
+    const headers = await signInAs(person);
+    await sweepSessions();
+    expect(await kindOf(headers)).toBe('user');
+    await Session.update({ expiresAt: new Date(Date.now() - 1_000) }, { where: { userId: person.id } });
+    await sweepSessions();
+    expect(await Session.count({ where: { userId: person.id } })).toBe(0);
   });
 
   it('is listed without its token, and its owner can end it', async () => {
