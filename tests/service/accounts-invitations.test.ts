@@ -83,8 +83,11 @@ describe('inviting people to an imprint', () => {
     const [owner, guest] = [await makePerson(), await makePerson()];
     const imprint = await makeImprint({ owner });
     const { secret } = await invite(owner, imprint.id, guest.email);
-    const codes = await Promise.all([codeOf(accept(guest, secret)), codeOf(accept(guest, secret))]);
-    expect(codes.sort()).toEqual(['TOKEN_SPENT', 'none']);
+    const actor = await actAs(guest);
+    const codes = await Promise.all(
+      Array.from({ length: 5 }, () => codeOf(acceptInvitation({ actor, secret, headers: browserHeaders() }))),
+    );
+    expect(codes.sort()).toEqual([...Array<string>(4).fill('TOKEN_SPENT'), 'none']);
     expect(await ImprintMember.count({ where: { imprintId: imprint.id, userId: guest.id } })).toBe(1);
   });
 
