@@ -68,7 +68,8 @@ export function createTree(capacity: number): CutTree {
   };
 }
 
-function growTree(tree: CutTree, capacity: number): void {
+/** Makes room for `capacity` nodes. */
+export function growTree(tree: CutTree, capacity: number): void {
   const larger = createTree(capacity);
   for (const key of ['code', 'parent', 'depth'] as const) {
     larger[key].set(tree[key]);

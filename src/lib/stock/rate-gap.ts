@@ -2,6 +2,8 @@ import { ACROSS, UP, type CutTree } from './cut-tree.ts';
 
 /** What an area of growth costs that no leftover nearby pays for, against squared leftovers. */
 const UNPAID_GROWTH = 1;
+/** Weight of the less close side in a close fit. */
+const SECOND_SIDE = 1e-4;
 
 function lossOf(leftover: number, taken: number): number {
   if (leftover <= taken) return leftover * leftover + UNPAID_GROWTH * (taken - leftover);
@@ -12,6 +14,7 @@ function lossOf(leftover: number, taken: number): number {
 /**
  * How much the sum of squared leftover areas falls when a part of size x by y goes into gap `at`: the less, the better the
  * place, since large leftovers stay whole and strips of waste count for nothing. Growth of rows further out is estimated.
+ * With `isCloseFit` the closer of the two differences between part and gap counts instead, which finds what belongs together.
  * Rating by squared leftovers follows Gardeyn and Wauters (arXiv 2508.19306).
  */
 export function rateGap(
@@ -21,9 +24,11 @@ export function rateGap(
   y: number,
   isRipFirst: boolean,
   scale: number,
+  isCloseFit: boolean,
 ): number {
   const { code, parent, needX, needY, allotX, allotY } = tree;
   if (tree.size === 0) {
+    if (isCloseFit) return Math.min(tree.width - x, tree.height - y);
     const end = (tree.width - x) * tree.height * scale;
     const beside = x * (tree.height - y) * scale;
     return tree.leftover - end * end - beside * beside;
@@ -52,6 +57,11 @@ export function rateGap(
   }
   const growV = v - allotV;
   const growU = needU + u - allotU;
+  if (isCloseFit) {
+    const byV = Math.abs(growV);
+    const byU = Math.abs(growU);
+    return byV < byU ? byV + byU * SECOND_SIDE : byU + byV * SECOND_SIDE;
+  }
   const crossV = growV > 0 ? v : allotV;
   const before = (allotU - needU) * allotV * scale;
   const after = growU > 0 ? 0 : -growU * crossV * scale;

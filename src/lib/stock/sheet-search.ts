@@ -17,6 +17,11 @@ const MOST_TREES = 2;
 const MOST_NODES = 6;
 const WHOLE_TREE = 0.05;
 const WHOLE_ROW = 0.25;
+/** Shares of steps that keep a row together, join parts that share a side, rate gaps by close fit, or clear whole trees first. */
+const HELD_ROW = 0.5;
+const JOINED = 0.3;
+const CLOSE_FIT = 0.3;
+const CLEARED = 0.05;
 /** Weight of scattered leftovers against the area of parts without a place. */
 const SCATTER = 0.02;
 /** Steps between two looks at the caller's clock. */
@@ -130,9 +135,24 @@ export function searchSheets(model: SheetModel, options: SheetSearchOptions): vo
             node = Math.floor(random() * tree.size);
         }
         if (node === 0) node = tree.size - 1;
-        state.remove(b, node);
+        const isRow = ((state.trees[b] as CutTree).code[node] as number) < 0;
+        state.remove(b, node, isRow && !model.isRipFirst && random() < HELD_ROW);
       }
     }
+  }
+
+  /** One step: ruin and recreate. */
+  function change(state: SheetState): void {
+    ruin(state);
+    if (random() < CLEARED) {
+      for (let k = Math.floor(random() * 2); k >= 0 && state.trees.length > 0; k--) {
+        state.clear(Math.floor(random() * state.trees.length));
+      }
+    }
+    if (!model.isRipFirst && random() < JOINED) state.joinOut();
+    state.isCloseFit = random() < CLOSE_FIT;
+    sortUnits(state.out, drawOrder());
+    state.recreate(BLINK);
   }
 
   let steps = 0;
@@ -225,9 +245,7 @@ export function searchSheets(model: SheetModel, options: SheetSearchOptions): vo
   function reduce(until: number): void {
     while (steps < until && mayGoOn()) {
       steps++;
-      ruin(state);
-      sortUnits(state.out, drawOrder());
-      state.recreate(BLINK);
+      change(state);
       if ((bestOut > 0 || state.out.length === 0) && offer(state)) {
         if (bestOut === 0 && bestCost <= options.lowerBound) return;
         aimLower();
@@ -253,9 +271,7 @@ export function searchSheets(model: SheetModel, options: SheetSearchOptions): vo
     }
     while (steps < until && mayGoOn()) {
       steps++;
-      ruin(tidy);
-      sortUnits(tidy.out, drawOrder());
-      tidy.recreate(BLINK);
+      change(tidy);
       const value = tidy.out.length === 0 ? leftoverOf(tidy) : -Infinity;
       if (value === -Infinity || !gathering.accepts(-value)) {
         tidy.undo();

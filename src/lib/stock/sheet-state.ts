@@ -1,4 +1,6 @@
+import { type CutBlock, copyBlock, createBlock, insertBlock, turnBlock } from './cut-block.ts';
 import { GONE, type CutTree, copyTree, createTree, insertLeaf, pruneTree, refreshTree } from './cut-tree.ts';
+import { joinAlike } from './join-parts.ts';
 import { rateGap } from './rate-gap.ts';
 import { type SheetModel, fitsStock } from './sheet-model.ts';
 
@@ -11,10 +13,17 @@ export interface SheetState {
   cost: number;
   /** Stock bought may not cost more than this. */
   limit: number;
-  /** Takes each unit of `out` in its order and puts it in the best place, opening stock while the limit permits. */
+  /** Whether gaps are rated by how closely a part fits, instead of by what is left over. */
+  isCloseFit: boolean;
+  /**
+   * Puts the blocks held and then each unit of `out`, in its order, in the best place, opening stock while the limit permits.
+   * A block that has no place falls apart.
+   */
   recreate: (blink: number) => void;
-  /** Takes a node of a tree, with all below it, out of the layout. */
-  remove: (tree: number, node: number) => void;
+  /** Takes a node of a tree, with all below it, out of the layout: into `out`, or held as a block until recreation. */
+  remove: (tree: number, node: number, isHeld: boolean) => void;
+  /** Holds some of what is out in blocks that share a side. */
+  joinOut: () => void;
   /** Takes everything off a tree. */
   clear: (tree: number) => void;
   /** Starts a change that may be undone. */
@@ -31,7 +40,7 @@ export interface SheetState {
 
 /** Creates an empty state for a model. `random` drives blinks and the choice of stock. */
 export function createSheetState(model: SheetModel, random: () => number): SheetState {
-  const { partX, partY, canTurn, stockX, stockY, cost: price, count, kindOf, isRipFirst } = model;
+  const { partX, partY, canTurn, stockX, stockY, cost: price, count, kindOf, isRipFirst, problem } = model;
   let largest = 0;
   for (let s = 0; s < stockX.length; s++)
     largest = Math.max(largest, (stockX[s] as number) * (stockY[s] as number));
@@ -54,6 +63,10 @@ export function createSheetState(model: SheetModel, random: () => number): Sheet
   let bestTurn = 0;
   let bestLoss = 0;
 
+  let held: CutBlock[] = [];
+  const mayTurn = (leaf: number) => problem.parts[kindOf[leaf >> 1] as number]?.turn === true;
+  const fits = (x: number, y: number) => stockX.some((w, s) => x <= w && y <= (stockY[s] as number));
+
   const takeSpare = () => spare.pop() ?? createTree(32);
 
   const state: SheetState = {
@@ -61,8 +74,10 @@ export function createSheetState(model: SheetModel, random: () => number): Sheet
     out: [],
     cost: 0,
     limit: Infinity,
+    isCloseFit: false,
     recreate,
     remove,
+    joinOut,
     clear,
     begin,
     keep,
@@ -113,24 +128,32 @@ export function createSheetState(model: SheetModel, random: () => number): Sheet
     spare.push(tree);
   }
 
-  /** Looks for the best gap for a kind in trees from `from` on; each place is overlooked with probability `blink`. */
-  function search(kind: number, blink: number, from: number): boolean {
+  /**
+   * Looks for the best gap for a piece of a size in trees from `from` on, for one of at least `area`; each place is overlooked
+   * with probability `blink`.
+   */
+  function search(
+    length: number,
+    width: number,
+    turns: number,
+    area: number,
+    blink: number,
+    from: number,
+  ): boolean {
     bestTree = -1;
     bestLoss = Infinity;
-    const length = partX[kind] as number;
-    const width = partY[kind] as number;
-    const area = length * width;
-    for (let b = from; b < state.trees.length; b++) {
-      const tree = state.trees[b] as CutTree;
+    const { trees, isCloseFit } = state;
+    for (let b = from; b < trees.length; b++) {
+      const tree = trees[b] as CutTree;
       if (tree.free < area) continue;
       const { gapX, gapY, gaps } = tree;
-      for (let turned = 0; turned <= (canTurn[kind] as number); turned++) {
+      for (let turned = 0; turned <= turns; turned++) {
         const x = turned ? width : length;
         const y = turned ? length : width;
         for (let i = 0; i < gaps; i++) {
           if ((gapX[i] as number) < x || (gapY[i] as number) < y) continue;
           if (blink > 0 && random() < blink) continue;
-          const loss = rateGap(tree, i, x, y, isRipFirst, scale);
+          const loss = rateGap(tree, i, x, y, isRipFirst, scale, isCloseFit);
           if (loss < bestLoss) {
             bestLoss = loss;
             bestTree = b;
@@ -141,6 +164,12 @@ export function createSheetState(model: SheetModel, random: () => number): Sheet
       }
     }
     return bestTree >= 0;
+  }
+
+  function searchKind(kind: number, blink: number, from: number): boolean {
+    const length = partX[kind] as number;
+    const width = partY[kind] as number;
+    return search(length, width, canTurn[kind] as number, length * width, blink, from);
   }
 
   function put(unit: number): void {
@@ -170,16 +199,46 @@ export function createSheetState(model: SheetModel, random: () => number): Sheet
     const tree = open(chosen);
     stampTree(tree);
     opened++;
-    return search(kind, 0, tree);
+    return searchKind(kind, 0, tree);
+  }
+
+  /** The units of a block go out one by one. */
+  function breakUp(codes: readonly number[]): void {
+    for (const code of codes) if (code >= 0) state.out.push(code >> 1);
+  }
+
+  function placeHeld(blink: number): void {
+    held.sort((a, b) => b.x * b.y - a.x * a.y);
+    for (const block of held) {
+      // A block may hold some waste, so a tree with somewhat less free area is looked at too.
+      if (search(block.x, block.y, block.canTurn ? 1 : 0, 0.9 * block.x * block.y, blink, 0)) {
+        const tree = touch(bestTree);
+        insertBlock(tree, bestGap, bestTurn ? turnBlock(block) : block);
+        refreshTree(tree, isRipFirst, scale);
+      } else breakUp(block.code);
+    }
+    held = [];
+  }
+
+  function joinOut(): void {
+    const singles = state.out.map((unit) => {
+      const kind = kindOf[unit] as number;
+      return createBlock(unit * 2, partX[kind] as number, partY[kind] as number, mayTurn(unit * 2));
+    });
+    state.out = [];
+    const joined = joinAlike([...held, ...singles], fits, random);
+    held = joined.filter((block) => block.code.length > 1);
+    for (const block of joined) if (block.code.length === 1) breakUp(block.code);
   }
 
   function recreate(blink: number): void {
+    if (held.length > 0) placeHeld(blink);
     pass++;
     const still: number[] = [];
     for (const unit of state.out) {
       const kind = kindOf[unit] as number;
       if ((failedIn[kind] as number) === pass) still.push(unit);
-      else if (search(kind, blink, 0) || buy(kind)) put(unit);
+      else if (searchKind(kind, blink, 0) || buy(kind)) put(unit);
       else {
         failedIn[kind] = pass;
         still.push(unit);
@@ -188,12 +247,13 @@ export function createSheetState(model: SheetModel, random: () => number): Sheet
     state.out = still;
   }
 
-  function remove(tree: number, node: number): void {
+  function remove(tree: number, node: number, isHeld: boolean): void {
     const t = touch(tree);
     const { code, parent } = t;
+    if (isHeld) held.push(copyBlock(t, node, mayTurn));
     // Everything after a node that hangs below it comes before its next sibling.
     for (let i = node; i < t.size && (i === node || (parent[i] as number) >= node); i++) {
-      if ((code[i] as number) >= 0) state.out.push((code[i] as number) >> 1);
+      if (!isHeld && (code[i] as number) >= 0) state.out.push((code[i] as number) >> 1);
       code[i] = GONE;
     }
     pruneTree(t, isRipFirst);
