@@ -10,7 +10,7 @@ export const POST = formEndpoint({
     const secret = context.params['token'] ?? '';
     const invitation = await acceptInvitation({ actor, secret, headers: context.request.headers });
     return invitation.kind === 'imprint'
-      ? { to: paths.office(), notice: `You belong to ${invitation.imprint} now.` }
+      ? { to: paths.office() }
       : {
           to: paths.proofPlan(invitation.planId),
           notice: `The draft of “${invitation.plan}” is open to you.`,
