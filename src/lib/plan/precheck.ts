@@ -17,6 +17,11 @@ const MAX_LINE_MARKERS = 24;
 /** Emphasis, brackets and backquotes in one block of text (up to a blank line). */
 const MAX_DELIMITERS_PER_BLOCK = 600;
 const MAX_BACKQUOTES_PER_BLOCK = 200;
+const MAX_TABLE_BARS_PER_BLOCK = 4000;
+const MAX_LINES_PER_BLOCK = 3000;
+const MAX_EXPRESSIONS = 10_000;
+/** Backslashes in the whole text: each costs the parser as much as a word. */
+const MAX_BACKSLASHES = 20_000;
 
 /** What is left after the pre-check: the text for the Markdown parser, and where expressions were blanked out of it. */
 export interface Prechecked {
@@ -170,10 +175,13 @@ function checkTags(source: Source, text: string, problems: ProblemList): boolean
   return true;
 }
 
+function isWordAt(text: string, index: number): boolean {
+  return /[A-Za-z0-9]/.test(text.charAt(index));
+}
+
 /** Counts what nests or pairs in Markdown, line by line and block by block. */
 function checkMarkdown(source: Source, text: string, problems: ProblemList): boolean {
-  let delimiters = 0;
-  let backquotes = 0;
+  let [delimiters, backquotes, bars, lines, backslashes] = [0, 0, 0, 0, 0];
   for (let line = 0; line < source.lineStarts.length; line += 1) {
     const start = source.lineStarts[line] ?? 0;
     const end = source.lineStarts[line + 1] ?? text.length;
@@ -183,6 +191,11 @@ function checkMarkdown(source: Source, text: string, problems: ProblemList): boo
     for (let i = start; i < end; i += 1) {
       const char = text.charAt(i);
       if (char === '\n' || char === '\r') continue;
+      // An underscore between letters opens no emphasis: names such as inner_width are free.
+      const isIntraword = char === '_' && isWordAt(text, i - 1) && isWordAt(text, i + 1);
+      if (isIntraword) continue;
+      if (char === '|') bars += 1;
+      if (char === '\\') backslashes += 1;
       if (char === '*' || char === '_' || char === '~' || char === '[' || char === ']' || char === '!')
         delimiters += 1;
       if (char === '`') backquotes += 1;
@@ -196,14 +209,21 @@ function checkMarkdown(source: Source, text: string, problems: ProblemList): boo
     const isRule =
       isLead &&
       /^[ \t]*([-*_])[ \t]*(?:\1[ \t]*){2,}\s*$/.test(text.slice(start, Math.min(end, start + 200)));
-    if (isBlank) delimiters = backquotes = 0;
+    lines += 1;
+    if (isBlank) delimiters = backquotes = bars = lines = 0;
     const isTooDeep = (markers > MAX_LINE_MARKERS && !isRule) || indent > 200;
-    if (isTooDeep || delimiters > MAX_DELIMITERS_PER_BLOCK || backquotes > MAX_BACKQUOTES_PER_BLOCK) {
+    const isTooMany =
+      delimiters > MAX_DELIMITERS_PER_BLOCK ||
+      backquotes > MAX_BACKQUOTES_PER_BLOCK ||
+      bars > MAX_TABLE_BARS_PER_BLOCK ||
+      lines > MAX_LINES_PER_BLOCK ||
+      backslashes > MAX_BACKSLASHES;
+    if (isTooDeep || isTooMany) {
       problems.add(placeAt(source, start, start + 1), {
         rule: 'nested-too-deep',
         message: isTooDeep
           ? 'Lists or quotes are nested too deep here.'
-          : 'There are too many asterisks, underscores, brackets or backquotes in one block of text.',
+          : 'There are too many lines, or too many asterisks, underscores, brackets, bars or backquotes, in one block of text.',
         hint: 'Put a blank line between blocks, or write \\* for an asterisk that is only text.',
       });
       return false;
@@ -235,12 +255,22 @@ export function precheck(source: Source, problems: ProblemList): Prechecked | nu
   // The same text with expressions blanked, for counting what is Markdown only.
   const outside: string[] = [];
   let from = 0;
+  let expressions = 0;
   for (let i = text.indexOf('{'); i !== -1; i = text.indexOf('{', i)) {
     let backslashes = 0;
     while (text[i - 1 - backslashes] === '\\') backslashes += 1;
     if (backslashes % 2 === 1) {
       i += 1;
       continue;
+    }
+    expressions += 1;
+    if (expressions > MAX_EXPRESSIONS) {
+      problems.add(placeAt(source, i, i + 1), {
+        rule: 'plan-too-long',
+        message: `The plan has more than ${MAX_EXPRESSIONS} expressions.`,
+        hint: 'Split it into several plans.',
+      });
+      return null;
     }
     const found = findClosingBrace(text, i);
     if ('fault' in found) {

@@ -291,7 +291,8 @@ export function* provePlan(
     }
     bounded = bounds.next();
   }
-  if (bounded.done) outcome.proved = bounded.value.proved;
+  let unproved: string[] = [];
+  if (bounded.done) ({ proved: outcome.proved, unproved } = bounded.value);
 
   let sinceBorder = 0;
   for (const point of pointsToTry(space, combinations, maxTries, random)) {
@@ -329,7 +330,7 @@ export function* provePlan(
       },
     });
   }
-  outcome.tried = describeTries(space, combinations.length, outcome, borders);
+  outcome.tried = describeTries(space, combinations.length, outcome, borders, unproved);
   outcome.holds = outcome.failures.length === 0 && !outcome.wasStopped;
   return outcome;
 }
@@ -339,6 +340,7 @@ function describeTries(
   combinations: number,
   outcome: ProofOutcome,
   borders: number,
+  unproved: readonly string[],
 ): string[] {
   const { tries, allowed, refused } = outcome;
   const of = `${space.dimensions.length} ${space.dimensions.length === 1 ? 'size' : 'sizes'} and ${combinations} ${
@@ -348,6 +350,7 @@ function describeTries(
     `${tries} fits were worked out in full, over ${of}: ${allowed} allowed, ${refused} refused by a requirement.`,
   ];
   if (borders > 0) told.push(`The border of the allowed sizes was approached ${borders} times.`);
+  if (unproved.length > 0) told.push(`Bounds could not show ${unproved.join('; ')}: this was only tried.`);
   if (outcome.wasStopped) told.push('The proof was stopped before its end.');
   return told;
 }
