@@ -12,7 +12,7 @@ import {
   successUrlOf,
 } from './pay-session.ts';
 import { settlePayout } from './payouts.ts';
-import { expireOverdue, expireSession } from './sessions.ts';
+import { expireOverdue, expireSession } from './session-state.ts';
 import { makeId, now, required, settingsOf, type World } from './world.ts';
 
 /*

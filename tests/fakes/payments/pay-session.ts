@@ -9,7 +9,7 @@ import {
   failAuthentication,
   type ConfirmOutcome,
 } from './payment-intents.ts';
-import { emptyDetails, expireOverdue, reckon } from './sessions.ts';
+import { emptyDetails, expireOverdue, reckon } from './session-state.ts';
 import { isEmail } from './params.ts';
 import type { PaymentIntent, Session, SessionFile } from './tables.ts';
 import { COUNTRIES } from './tax-table.ts';

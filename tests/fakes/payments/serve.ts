@@ -31,6 +31,7 @@
  *   /_control/release    { order?: first|last|[event ids or types] } sends what is held, one after the other; ends `hold`
  *   /_control/resend     { event, endpoint? }
  *   /_control/fail       { method?, path, times?, kind?: status|cut-before|cut-after|delay, status?, error?: { type, code, message }, delayMs? }
+ *                        after a cut line the SDK tries once more by itself: say times: 2 to have it see one
  *   /_control/fail/clear {}
  *   /_control/reset      {}                                forgets everything, endpoints too
  *   GET /_control/deliveries, GET /_control/state

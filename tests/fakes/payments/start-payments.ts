@@ -9,7 +9,7 @@ import { renderSheet } from './html.ts';
 import { answerPage } from './pages.ts';
 import { cancelAbandoned } from './pay-session.ts';
 import { settleWaitingPayouts } from './payouts.ts';
-import { expireOverdue } from './sessions.ts';
+import { expireOverdue } from './session-state.ts';
 import { openStore } from './store.ts';
 import type { World } from './world.ts';
 

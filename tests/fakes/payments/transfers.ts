@@ -1,7 +1,8 @@
 import type Stripe from 'stripe';
 import type * as z from 'zod';
 import { availableOf } from './balance.ts';
-import { blankCharge, bookMovement } from './charges.ts';
+import { blankCharge } from './charge-shape.ts';
+import { bookMovement } from './charges.ts';
 import { refuse } from './errors.ts';
 import { isWithin, pageOf } from './list.ts';
 import {
