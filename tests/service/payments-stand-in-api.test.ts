@@ -249,6 +249,16 @@ describe('faults that were asked for', () => {
   });
 });
 
+describe('the control API', () => {
+  it('is closed to pages of other sites, and refuses what it does not know', async () => {
+    const call = (path: string, headers: Record<string, string> = {}): Promise<Response> =>
+      fetch(`${running.url}/_control/${path}`, { method: 'POST', body: '{"advance":0,"much":1}', headers });
+    expect((await call('clock', { origin: 'http://evil.test' })).status).toBe(403);
+    expect((await call('clock')).status).toBe(400);
+    expect((await call('nothing')).status).toBe(404);
+  });
+});
+
 describe('the bracket notation', () => {
   it('reads nested objects and lists, and takes __proto__ for a key like any other', () => {
     expect(parseForm('a=1&b[c]=2&d[0]=x&d[1]=y&e[0][f]=%5B&g[]=p&g[]=q')).toEqual({

@@ -125,6 +125,9 @@ describe('the hosted payment page', () => {
     const paid = await open();
     await submitPage(paid.url);
     expect(await (await submitPage(paid.url)).text()).toContain('This payment is complete');
+    expect(await (await fetch(paid.url)).text()).toContain(
+      `href="http://shop.test/thanks?session=${paid.id}"`,
+    );
     const over = await open();
     await stripe.checkout.sessions.expire(over.id);
     expect(await (await fetch(over.url)).text()).toContain('This payment has expired');
@@ -281,6 +284,29 @@ describe('promotion codes', () => {
       type: 'StripeInvalidRequestError',
     });
     expect((await stripe.promotionCodes.retrieve(code.id)).active).toBe(false);
+  });
+});
+
+describe('a delayed payment', () => {
+  it.each([
+    ['succeeded', 'paid'],
+    ['failed', 'unpaid'],
+  ] as const)('completes the session unpaid, and tells later that it has %s', async (outcome, status) => {
+    const { id } = await open();
+    await control(running, 'pay', { session: id, delayed: true });
+    const waiting = await stripe.checkout.sessions.retrieve(id, { expand: ['payment_intent'] });
+    expect(waiting).toMatchObject({
+      status: 'complete',
+      payment_status: 'unpaid',
+      payment_intent: { status: 'processing' },
+    });
+    await control(running, 'settle', { session: id, outcome });
+    expect((await stripe.checkout.sessions.retrieve(id)).payment_status).toBe(status);
+    const [told] = (await stripe.events.list({ type: 'checkout.session.*', limit: 1 })).data;
+    expect(told).toMatchObject({
+      type: `checkout.session.async_payment_${outcome}`,
+      data: { object: { id, payment_status: status } },
+    });
   });
 });
 

@@ -35,7 +35,7 @@ const ROUTES: readonly Route[] = [
   ...eventRoutes,
 ];
 
-export interface ApiCall {
+interface ApiCall {
   method: string;
   path: string;
   query: string;
@@ -43,7 +43,7 @@ export interface ApiCall {
   header: (name: string) => string | undefined;
 }
 
-export interface ApiAnswer {
+interface ApiAnswer {
   status: number;
   body: string;
   headers: Record<string, string>;
@@ -52,7 +52,7 @@ export interface ApiAnswer {
 }
 
 /** Takes calls of the published API. */
-export interface Api {
+interface Api {
   answer(call: ApiCall): Promise<ApiAnswer>;
 }
 

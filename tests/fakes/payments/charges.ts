@@ -4,7 +4,7 @@ import type { TestCard } from './test-cards.ts';
 import { emit, makeId, now, setOwner, settingsOf, type World } from './world.ts';
 
 /** The fee on a card payment: 2.9 % and 30 minor units, rounded half up. One published tariff for all currencies. */
-export function feeOf(amount: number): number {
+function feeOf(amount: number): number {
   return Math.round((amount * 29) / 1000) + 30;
 }
 
@@ -127,7 +127,7 @@ export function makeCharge(
 }
 
 /** Gives a paid charge its balance transaction. */
-export function bookCharge(world: World, charge: Charge): Charge {
+function bookCharge(world: World, charge: Charge): Charge {
   const movement = bookMovement(world, {
     amount: charge.amount,
     currency: charge.currency,

@@ -2,6 +2,7 @@ import * as z from 'zod';
 import { completeOnboarding } from './accounts.ts';
 import { bookMovement } from './charges.ts';
 import type { Courier } from './deliver.ts';
+import { settleDelayedPayment, startDelayedPayment } from './delayed-payment.ts';
 import { closeDispute } from './disputes.ts';
 import { createEndpoint } from './events.ts';
 import {
@@ -46,21 +47,26 @@ export function createControls(world: World, courier: Courier): Control[] {
     name: z.string().default('Test Buyer'),
     country: z.string().default('US'),
     authenticate: z.enum(['complete', 'fail', 'leave']).default('complete'),
+    delayed: z.boolean().default(false),
   });
 
   return [
-    control('pay', pay, ({ session: id, authenticate, ...typed }) => {
+    control('pay', pay, ({ session: id, authenticate, delayed, ...rest }) => {
       const { session } = openSession(world, id);
       const email =
-        session.customer_email ?? typed.email ?? session.customer_details?.email ?? 'buyer@example.test';
-      const first = paySession(world, id, {
-        ...typed,
-        email,
-        expiry: '12 / 34',
-        cvc: '123',
-        hasAgreed: true,
-        wantsNews: false,
-      });
+        session.customer_email ?? rest.email ?? session.customer_details?.email ?? 'buyer@example.test';
+      const typed = { ...rest, email, expiry: '12 / 34', cvc: '123', hasAgreed: true, wantsNews: false };
+      if (delayed) {
+        const { payment_intent: intent } = startDelayedPayment(world, id, typed);
+        return {
+          outcome: 'delayed',
+          message: null,
+          session: id,
+          success_url: successUrlOf(session),
+          payment_intent: intent,
+        };
+      }
+      const first = paySession(world, id, typed);
       const outcome =
         first.state === 'authenticate' && authenticate !== 'leave'
           ? authenticateSession(world, id, authenticate === 'complete')
@@ -73,6 +79,11 @@ export function createControls(world: World, courier: Courier): Control[] {
         payment_intent: world.store.get('checkout.session', id)?.payment_intent ?? null,
       };
     }),
+    control(
+      'settle',
+      z.strictObject({ session: z.string(), outcome: z.enum(['succeeded', 'failed']) }),
+      ({ session, outcome }) => settleDelayedPayment(world, session, outcome),
+    ),
     control('expire', z.strictObject({ session: z.string() }), ({ session }) =>
       expireSession(world, required(world, 'checkout.session', session)),
     ),

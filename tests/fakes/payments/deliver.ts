@@ -20,7 +20,7 @@ export const QUICK: DeliveryTiming = {
 };
 
 /** The published signature over a payload: `t=seconds,v1=HMAC-SHA-256 of "t.payload"`. */
-export function signPayload(payload: string, secret: string, atSeconds: number): string {
+function signPayload(payload: string, secret: string, atSeconds: number): string {
   const digest = createHmac('sha256', secret).update(`${atSeconds}.${payload}`, 'utf8').digest('hex');
   return `t=${atSeconds},v1=${digest}`;
 }

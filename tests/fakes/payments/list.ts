@@ -1,12 +1,12 @@
 import { refuse } from './errors.ts';
 
-export interface PageParams {
+interface PageParams {
   limit?: number | undefined;
   starting_after?: string | undefined;
   ending_before?: string | undefined;
 }
 
-export interface Page<T> {
+interface Page<T> {
   object: 'list';
   data: T[];
   has_more: boolean;

@@ -16,7 +16,7 @@ import type { Session, SessionFile } from './tables.ts';
 import { matchPath } from './route.ts';
 import { now, type World } from './world.ts';
 
-export type PageAnswer = { status: number; html: string } | { status: 303; location: string };
+type PageAnswer = { status: number; html: string } | { status: 303; location: string };
 
 function fieldsOf(form: URLSearchParams): Typed {
   const field = (name: string): string => (form.get(name) ?? '').slice(0, 300);

@@ -1,6 +1,6 @@
 import { printAmount } from './currencies.ts';
 import { escapeHtml as e, renderSheet } from './html.ts';
-import type { Typed } from './pay-session.ts';
+import { successUrlOf, type Typed } from './pay-session.ts';
 import type { Session, SessionFile } from './tables.ts';
 import { COUNTRIES } from './tax-table.ts';
 import { printDiscountName } from './print-discount.ts';
@@ -146,10 +146,10 @@ export function renderAuthenticatePage(session: Session): string {
 /** What a session says that can no longer be paid. */
 export function renderClosedPage(session: Session): string {
   const isPaid = session.status === 'complete';
-  const back = isPaid ? null : session.cancel_url;
+  const next = isPaid ? successUrlOf(session) : session.cancel_url;
   return renderSheet(
     isPaid ? 'This payment is complete' : 'This payment has expired',
     `<p>${isPaid ? 'It has been made already; nothing is charged again.' : 'Nothing was charged. Start again from the shop.'}</p>
-${back ? `<p><a href="${e(back)}">Back to the shop</a></p>` : ''}`,
+${next ? `<p><a href="${e(next)}">${isPaid ? 'On to the order' : 'Back to the shop'}</a></p>` : ''}`,
   );
 }

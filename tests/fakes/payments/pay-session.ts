@@ -102,7 +102,8 @@ export function chooseCountry(world: World, id: string, country: string): Sessio
   return reckon(world, session, file, country).session;
 }
 
-function intentOf(world: World, session: Session, file: SessionFile): PaymentIntent {
+/** The payment intent of a session, made at the first try to pay. */
+export function intentOf(world: World, session: Session, file: SessionFile): PaymentIntent {
   const old = session.payment_intent ? world.store.get('payment_intent', session.payment_intent) : undefined;
   const amount = session.amount_total ?? 0;
   // An intent from a try that failed is taken again; the amount may have changed with the country.
@@ -173,12 +174,14 @@ function finish(
   return { state: 'paid', session: complete(world, session, file, typed, outcome.intent.id) };
 }
 
-function complete(
+/** Completes a session with what was typed; a delayed payment leaves it unpaid for now. */
+export function complete(
   world: World,
   session: Session,
   file: SessionFile,
   typed: Typed,
   intentId: string | null,
+  isDelayed = false,
 ): Session {
   const address = fullAddress({ country: typed.country });
   let customer = session.customer;
@@ -205,7 +208,7 @@ function complete(
     customer,
     customer_details: { ...emptyDetails(typed.email, typed.name), address },
     payment_intent: intentId,
-    payment_status: intentId ? 'paid' : 'no_payment_required',
+    payment_status: isDelayed ? 'unpaid' : intentId ? 'paid' : 'no_payment_required',
     status: 'complete',
     url: null,
   });

@@ -6,7 +6,8 @@
  *     --webhook-url http://127.0.0.1:4321/api/webhooks/payments --webhook-secret whsec_… [--webhook-events a,b]
  *
  * Each flag may come from the environment instead: PAYMENTS_PORT, PAYMENTS_STATE, PAYMENTS_PUBLIC_URL, PAYMENTS_WEBHOOK_URL, PAYMENTS_WEBHOOK_SECRET,
- * PAYMENTS_WEBHOOK_EVENTS. Tests call `startPayments` of start-payments.ts. It listens on 127.0.0.1 only, takes any key `sk_test_…` and refuses live keys.
+ * PAYMENTS_WEBHOOK_EVENTS. Tests call `startPayments` of start-payments.ts. It listens on
+ * 127.0.0.1 only, takes any key `sk_test_…` and refuses live keys.
  *
  * Pages: /c/pay/:session (pay), /c/pay/:session/authenticate, /setup/:token (open a payment account), /_health.
  * Cards: 4242424242424242 pays, 4000000000000002 declined, 4000000000009995 insufficient funds, 4000000000000069 expired, 4000000000000127 wrong
@@ -18,6 +19,8 @@
  *
  * Control calls (JSON, POST unless said otherwise; no part of the published API):
  *   /_control/pay        { session, card?, email?, name?, country?, authenticate?: complete|fail|leave } pays without a browser -> { outcome, message, success_url, payment_intent }
+ *                        delayed: true completes the session unpaid, as with a bank debit;
+ *   /_control/settle     { session, outcome: succeeded|failed } then ends it (checkout.session.async_payment_*)
  *   /_control/expire     { session }
  *   /_control/onboard    { account }                       completes a connected account
  *   /_control/dispute    { dispute, outcome: won|lost }

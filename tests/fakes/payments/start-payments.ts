@@ -93,7 +93,13 @@ export async function startPayments(options: StartOptions): Promise<RunningPayme
     const method = request.method ?? 'GET';
     if (pathname.startsWith('/v1/'))
       return answerApi(request, response, { method, path: pathname, query: search.slice(1), body });
-    if (pathname.startsWith('/_control/')) return answerControl(response, method, pathname, body);
+    // A page open in a browser on this machine must not steer the stand-in.
+    const isForeign = request.headers.origin !== undefined && request.headers.origin !== world.publicUrl;
+    if (pathname.startsWith('/_control/')) {
+      return isForeign
+        ? sendJson(response, 403, '{"error":"foreign origin"}')
+        : answerControl(response, method, pathname, body);
+    }
     if (pathname === '/_health') return sendJson(response, 200, '{"ok":true}');
     const page =
       method === 'GET' || method === 'POST'

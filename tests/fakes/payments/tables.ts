@@ -1,7 +1,7 @@
 import type Stripe from 'stripe';
 
 /** A published type as it is stored and sent: what may be expanded is an id, decimals are text. */
-export type Flat<T> = { [K in keyof T]: FlatField<T[K]> };
+type Flat<T> = { [K in keyof T]: FlatField<T[K]> };
 type FlatField<V> = Stripe.Decimal extends V
   ? Exclude<V, Stripe.Decimal> | string
   : string extends V
@@ -58,7 +58,7 @@ export interface SessionFile {
   attempt: { email: string; name: string; country: string; card: string } | null;
 }
 
-export interface EndpointFile {
+interface EndpointFile {
   secret: string;
   isConnect: boolean;
 }
@@ -99,7 +99,7 @@ export interface CallFault {
   delayMs: number;
 }
 
-export interface KeptAnswer {
+interface KeptAnswer {
   fingerprint: string;
   status: number;
   body: string;

@@ -3,7 +3,7 @@ import type { Coupon, LineItem, SessionFile } from './tables.ts';
 import { taxOf } from './tax-table.ts';
 
 /** Shares an amount out over weights so that the parts add up to it exactly; the largest remainders get the odd units. */
-export function shareOut(amount: number, weights: readonly number[]): number[] {
+function shareOut(amount: number, weights: readonly number[]): number[] {
   const sum = weights.reduce((total, weight) => total + weight, 0);
   if (sum === 0) return weights.map(() => 0);
   const exact = weights.map((weight) => (amount * weight) / sum);
@@ -21,7 +21,7 @@ export function shareOut(amount: number, weights: readonly number[]): number[] {
 }
 
 /** What a coupon takes off, in minor units: never more than there is. */
-export function discountOf(coupon: Coupon, subtotal: number): number {
+function discountOf(coupon: Coupon, subtotal: number): number {
   if (coupon.percent_off !== null) return Math.round((subtotal * coupon.percent_off) / 100);
   return Math.min(coupon.amount_off ?? 0, subtotal);
 }
@@ -54,7 +54,7 @@ function rateOf(
   };
 }
 
-export interface Totals {
+interface Totals {
   lines: LineItem[];
   taxes: SessionFile['taxes'];
   subtotal: number;
