@@ -47,6 +47,8 @@ function transformsFor(capacity: number, sizes: number[]): Transform[] {
     .sort((a, b) => a - b);
   return [
     (x) => x / capacity,
+    // Of parts larger than half, no two lie side by side.
+    cutOffSmall(capacity, capacity / 2),
     ...thin(cutOffs, MAX_THRESHOLDS).map((k) => cutOffSmall(capacity, k)),
     ...thin(steps, MAX_THRESHOLDS).map((k) => roundToSteps(capacity, k)),
   ];

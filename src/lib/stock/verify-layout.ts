@@ -188,6 +188,23 @@ function replayCuts(
   return pieces;
 }
 
+/**
+ * The first cut that leaves the order rip, crosscut, rip, each of which may be left out, or else null. A fourth pass may only
+ * trim one part to its length.
+ */
+function findCutBeyondStages(laid: LaidPiece): number | null {
+  const partPieces = new Set(laid.placements.map((p) => p.piece));
+  const reached = new Map<string, number>([['whole', 1]]);
+  for (const cut of laid.cuts) {
+    const before = reached.get(cut.piece) ?? 1;
+    const isRip = cut.direction === 'rip';
+    const stage = cut.edge || (before % 2 === 1) === isRip ? before : before + 1;
+    if (stage > 3 && !(stage === 4 && partPieces.has(cut.yields[0]))) return cut.number;
+    for (const name of cut.yields) if (name !== null) reached.set(name, stage);
+  }
+  return null;
+}
+
 /** Every fault of a layout against its problem; an empty list means that it can be cut exactly as it says. */
 export function verifyLayout(problem: StockProblem, layout: Layout): Fault[] {
   const faults: Fault[] = [];
@@ -297,14 +314,9 @@ export function verifyLayout(problem: StockProblem, layout: Layout): Fault[] {
       }
     }
     if (problem.kind === 'sheet' && problem.ripFirst) {
-      const parts = new Set(laid.placements.map((p) => p.piece));
-      for (const c of laid.cuts) {
-        if (c.stage % 2 === 1 && c.direction !== 'rip')
-          say('stage-exceeded', `Cut ${c.number} should be a rip.`);
-        if (c.stage > 3 && !(c.stage === 4 && parts.has(c.yields[0]))) {
-          say('stage-exceeded', `Cut ${c.number} is of stage ${c.stage}.`);
-        }
-      }
+      const name = findCutBeyondStages(laid);
+      if (name !== null)
+        say('stage-exceeded', `Cut ${name} is not within rip, crosscut, rip and trimming to size.`);
     }
     const share = partArea / (stock.length * stock.width);
     if (Math.abs(share - laid.yield) > 1e-9)
