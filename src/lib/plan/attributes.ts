@@ -370,6 +370,12 @@ function readText(text: string, reading: Reading): ReadValue | null {
       return { type: 'formula', formula: makeFormula(expression, reading.at, `"${text}"`) };
     }
     case 'flag':
+      return fail(reading, {
+        rule: 'wrong-kind',
+        message: `${attribute.name} of <${element.name}> stands alone, without a value.`,
+        wanted: attribute.name,
+        hint: `Write ${attribute.name} alone, or leave it out.`,
+      });
     case 'number':
     case 'count':
     case 'yesno':
@@ -396,10 +402,9 @@ function wantedBy(type: AttributeType): string {
   if (type === 'sizes') return 'a list of stock sizes';
   if (type === 'turn') return 'an axis and an angle';
   if (type === 'count') return 'a whole number';
-  if (type === 'flag') return 'nothing behind the word';
   if (type === 'constant') return 'a length, an angle or a number';
   if (type === 'option') return 'a length, a number or a text';
-  return kind === undefined ? 'a value' : describeKind(kind);
+  return kind === undefined ? 'an expression' : describeKind(kind);
 }
 
 /** True for the name of an uploaded picture: no folders, no addresses. */

@@ -63,16 +63,14 @@ function roundedKind(args: readonly Kind[]): Kind | { wanted: string } {
   const [value, step] = args;
   if (value === undefined || !isNumericKind(value)) return { wanted: 'a number or a measure' };
   if (step === undefined)
-    return value === 'number'
-      ? 'number'
-      : { wanted: `a step of the same kind, ${describeKind(value)}, as second value` };
-  return isSameKind(value, step) ? value : { wanted: `a step of the same kind, ${describeKind(value)}` };
+    return value === 'number' ? 'number' : { wanted: `a step that is ${describeKind(value)}` };
+  return isSameKind(value, step) ? value : { wanted: `a step that is ${describeKind(value)}` };
 }
 
 const toNumber =
   (wanted: 'angle' | 'number', result: Kind) =>
   (args: readonly Kind[]): Kind | { wanted: string } =>
-    args[0] === wanted ? result : { wanted: wanted === 'angle' ? 'an angle, such as 30*deg' : 'a number' };
+    args[0] === wanted ? result : { wanted: wanted === 'angle' ? 'an angle (30*deg)' : 'a number' };
 
 const rounding = (
   usage: string,

@@ -83,6 +83,9 @@ interface ParserFault {
 }
 
 function placeOf(fault: ParserFault): { line: number; column: number } {
+  // An unclosed component is told in words only: “(12:1-12:7)”.
+  const told = typeof fault.reason === 'string' ? / \((\d+):(\d+)/.exec(fault.reason) : null;
+  if (told) return { line: Number(told[1]), column: Number(told[2]) };
   const line =
     fault.place?.start?.line ?? fault.place?.line ?? (typeof fault.line === 'number' ? fault.line : 1);
   const column =
