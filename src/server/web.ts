@@ -22,6 +22,9 @@ const server = createFront({
   handler,
   staticFolder: path.join(builtFolder, 'client'),
   trustedProxies: env.TRUSTED_PROXIES,
+  formTargets: env.STRIPE_API_BASE
+    ? [new URL(env.STRIPE_API_BASE).origin]
+    : ['https://checkout.stripe.com', 'https://connect.stripe.com'],
   checkHealth: async () => {
     await sequelize.query('select 1');
   },

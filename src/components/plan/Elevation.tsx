@@ -62,12 +62,7 @@ export function Elevation({ overall, units }: ElevationProps) {
   const label = `Front elevation: ${write(width)} wide, ${write(height)} high, ${write(depth)} deep.`;
   return (
     <figure className="elevation">
-      <svg
-        viewBox={`0 0 ${w + 2 * MARGIN} ${h + MARGIN + 40}`}
-        role="img"
-        aria-label={label}
-        style={{ maxHeight: '22rem', width: '100%' }}
-      >
+      <svg viewBox={`0 0 ${w + 2 * MARGIN} ${h + MARGIN + 40}`} role="img" aria-label={label}>
         <g transform={`translate(${MARGIN + 8} 8)`}>
           <rect width={w} height={h} fill="var(--wash)" stroke="currentColor" strokeWidth="2" />
           <path d={`M${-24} ${h}H${w + 24}`} stroke="currentColor" strokeWidth="1" />

@@ -52,8 +52,11 @@ export function SourceEditor({ source, generation, problems, goTo, onChange, onS
 
   useEffect(() => {
     if (!place.current) return undefined;
+    // In a shadow tree the editor adopts its style sheets, which the page's policy allows; style elements it would not.
+    const shadow = place.current.shadowRoot ?? place.current.attachShadow({ mode: 'open' });
     const made = new EditorView({
-      parent: place.current,
+      parent: shadow,
+      root: shadow,
       state: EditorState.create({
         doc: initial.current,
         extensions: [

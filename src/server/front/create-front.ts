@@ -19,6 +19,8 @@ export interface FrontOptions extends FrontRules {
   /** Folder of the built static files; left out in tests of the front alone. */
   staticFolder?: string;
   trustedProxies: readonly string[];
+  /** Origins that a form of ours may end at besides our own: the payment service's pages. */
+  formTargets: readonly string[];
   /** Resolves when the database answers; rejects otherwise. */
   checkHealth: () => Promise<void>;
   log: Pick<Logger, 'info' | 'error'>;
@@ -106,7 +108,7 @@ export function createFront(options: FrontOptions): Server {
     (request, response) => {
       const requestId = randomUUID();
       const startedAt = process.hrtime.bigint();
-      setSecurityHeaders(response, isHttps);
+      setSecurityHeaders(response, { isHttps, formTargets: options.formTargets });
       response.setHeader('x-request-id', requestId);
       response.on('finish', () => {
         log.info(
