@@ -11,11 +11,11 @@ export interface DeliveryTiming {
   answerTimeoutMs: number;
 }
 
-/** The published service retries for days; a developer waits seconds. */
+/** The published service retries for three days; a developer waits seconds at first, and the app may be off for hours. */
 export const QUICK: DeliveryTiming = {
   retryBaseMs: 250,
-  retryMaxMs: 15_000,
-  maxTries: 30,
+  retryMaxMs: 30_000,
+  maxTries: 1000,
   answerTimeoutMs: 10_000,
 };
 
@@ -59,14 +59,15 @@ export function startCourier(world: World, timing: DeliveryTiming): Courier {
   }
 
   function work(): void {
+    // One reading of the clock for both questions, or a delivery that falls due between them is forgotten.
+    const at = Date.now();
     const waiting = world.store
       .all('delivery')
       .filter((row) => row.state === 'pending' && !running.has(row.id));
-    const due = waiting.filter((row) => row.dueAtMs <= Date.now());
-    for (const delivery of due) sending.push(attempt(delivery.id));
+    for (const delivery of waiting) if (delivery.dueAtMs <= at) sending.push(attempt(delivery.id));
     sending = sending.slice(-200);
-    const next = Math.min(...waiting.filter((row) => row.dueAtMs > Date.now()).map((row) => row.dueAtMs));
-    if (Number.isFinite(next)) wake(next - Date.now());
+    const next = Math.min(...waiting.filter((row) => row.dueAtMs > at).map((row) => row.dueAtMs));
+    if (Number.isFinite(next)) wake(next - at);
   }
 
   async function attempt(id: string): Promise<void> {
@@ -74,7 +75,12 @@ export function startCourier(world: World, timing: DeliveryTiming): Courier {
     const event = delivery && world.store.get('event', delivery.event);
     const endpoint = delivery && world.store.get('webhook_endpoint', delivery.endpoint);
     const file = delivery && world.store.get('endpoint_file', delivery.endpoint);
-    if (!delivery || !event || !endpoint || !file || running.has(id)) return;
+    if (!delivery || running.has(id)) return;
+    if (!event || !endpoint || !file) {
+      // Its endpoint was taken away meanwhile.
+      world.store.put('delivery', id, { ...delivery, state: 'failed' });
+      return;
+    }
     running.add(id);
     const payload = JSON.stringify(withPending(world, event), null, 2);
     const result = await post(endpoint.url, payload, file.secret);
@@ -113,14 +119,15 @@ export function startCourier(world: World, timing: DeliveryTiming): Courier {
   }
 
   function record(delivery: Delivery, result: { status: number | null; error: string | null }): void {
-    const attempts = [...delivery.attempts, { at: new Date().toISOString(), ...result }];
+    const attempts = [...delivery.attempts, { at: new Date().toISOString(), ...result }].slice(-20);
     const isTaken = result.status !== null && result.status >= 200 && result.status < 300;
-    const tries = attempts.length;
+    const tries = delivery.tries + 1;
     const copies = isTaken ? delivery.copies - 1 : delivery.copies;
     const wait = Math.min(timing.retryBaseMs * 2 ** Math.min(tries - 1, 20), timing.retryMaxMs);
     const state = copies === 0 ? 'delivered' : tries >= timing.maxTries ? 'failed' : 'pending';
     world.store.put('delivery', delivery.id, {
       ...delivery,
+      tries,
       attempts,
       copies,
       state,
@@ -142,6 +149,7 @@ export function startCourier(world: World, timing: DeliveryTiming): Courier {
             ? 'held'
             : 'pending',
       copies: rule?.action === 'repeat' ? rule.count : 1,
+      tries: 0,
       attempts: [],
       dueAtMs: Date.now() + (rule?.action === 'delay' ? rule.delayMs : 0),
     });

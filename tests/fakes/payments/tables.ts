@@ -71,6 +71,8 @@ export interface Delivery {
   state: 'held' | 'pending' | 'delivered' | 'dropped' | 'failed';
   /** Copies still to be sent; more than one where a repeat was asked for. */
   copies: number;
+  tries: number;
+  /** The last tries only, the newest at the end. */
   attempts: { at: string; status: number | null; error: string | null }[];
   /** Real time in milliseconds at which it is due. */
   dueAtMs: number;
