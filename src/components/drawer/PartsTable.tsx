@@ -2,7 +2,7 @@ import { ChangeBar } from '#components/ui/ChangeBar.tsx';
 import { DataTable } from '#components/ui/DataTable.tsx';
 import { Length } from '#components/ui/Length.tsx';
 import { PartMark } from '#components/ui/PartMark.tsx';
-import { lengthFormat } from '#components/plan/length-format.ts';
+import { lengthFormat } from '#lib/plan/length-format.ts';
 import type { ResolvedMaterial, ResolvedPart, UnitSystem } from '#lib/plan/types.ts';
 import { formatLength } from '#lib/units/format-length.ts';
 

@@ -1,6 +1,6 @@
 import type { UnitSystem } from '#lib/plan/types.ts';
 import { formatLength } from '#lib/units/format-length.ts';
-import { lengthFormat } from './length-format.ts';
+import { lengthFormat } from '#lib/plan/length-format.ts';
 
 interface ElevationProps {
   /** Overall size in nanometres. */

@@ -1,10 +1,10 @@
 import { Fragment, type ReactNode } from 'react';
 import { Length } from '#components/ui/Length.tsx';
 import { Notice } from '#components/ui/Notice.tsx';
-import { lengthFormat } from './length-format.ts';
+import { lengthFormat } from '#lib/plan/length-format.ts';
 import { formatLength } from '#lib/units/format-length.ts';
 import type { ResolvedProse, ResolvedProseNode, UnitSystem } from '#lib/plan/types.ts';
-import { cautionTitle } from './caution-titles.ts';
+import { cautionTitle } from '#lib/plan/caution-titles.ts';
 
 /** A picture as the page can show it. */
 export interface ShownPicture {

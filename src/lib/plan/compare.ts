@@ -77,8 +77,7 @@ function fact(field: string, kind: Kind, value: Value | undefined): Fact[] {
 function shapeFacts(shapes: readonly ResolvedShape[]): Fact[] {
   const counts = new Map<string, number>();
   return shapes.flatMap((shape) => {
-    const words = Object.entries(shape.words).map(([name, word]) => `${name} ${word}`);
-    const title = [shape.type, ...words].join(' ');
+    const title = [shape.type, ...Object.values(shape.words)].join(' ');
     const count = (counts.get(title) ?? 0) + 1;
     counts.set(title, count);
     const name = count === 1 ? title : `${title} (${count})`;

@@ -11,11 +11,12 @@ export interface PublicMaterial {
   measured: boolean;
   /** Stock sizes in nanometres, [length, width] or [length]. */
   sizes: number[][];
-  /** Totals: rounded, so that no part size can be worked back out of them. */
+  /** Totals in the measure that the material is sold by, to a tenth, so that no part size can be worked back out of them. */
   leastStock: number;
-  areaM2: number;
-  boardFeet: number;
-  lengthM: number;
+  /** Of sheets, of boards, of bars. */
+  areaM2?: number;
+  boardFeet?: number;
+  lengthM?: number;
   price?: { minor: number; currency: string; per: string };
   costMinor?: number;
 }
@@ -64,9 +65,9 @@ export interface PublicFigures {
   canBeBuilt: boolean;
 }
 
-/** Two decimals: what a shopping list needs, and too coarse to work a part size back from. */
+/** Up to a tenth: what a shopping list needs, and too coarse to work a part size back from. */
 function roundTotal(value: number): number {
-  return Math.round(value * 100) / 100;
+  return Math.ceil(value * 10 - 1e-9) / 10;
 }
 
 function given<K extends string, V>(name: K, value: V | undefined): Partial<Record<K, V>> {
@@ -109,9 +110,9 @@ export function publicFigures(resolved: ResolvedPlan): PublicFigures {
       measured: material.measured,
       sizes: material.sizes.map((size) => [...size]),
       leastStock: material.leastStock,
-      areaM2: roundTotal(material.areaM2),
-      boardFeet: roundTotal(material.boardFeet),
-      lengthM: roundTotal(material.lengthM),
+      ...(material.kind === 'sheet' && { areaM2: roundTotal(material.areaM2) }),
+      ...(material.kind === 'board' && { boardFeet: roundTotal(material.boardFeet) }),
+      ...(material.kind === 'bar' && { lengthM: roundTotal(material.lengthM) }),
       ...given('price', material.price && { ...material.price }),
       ...given('costMinor', material.costMinor),
     })),
