@@ -36,6 +36,8 @@ const envSchema = z
     MAIL_FROM: z.string().default('Benchleaf <post@benchleaf.test>'),
     STRIPE_SECRET_KEY: z.string().min(1),
     STRIPE_WEBHOOK_SECRET: z.string().min(1),
+    /** Secret of the second webhook endpoint, for events of connected accounts, where the real service has one. */
+    STRIPE_CONNECT_WEBHOOK_SECRET: z.string().min(1).optional(),
     /** Base address of the payment service's API; left out for the real one. */
     STRIPE_API_BASE: z.url().optional(),
     /** Folder of the built site. */

@@ -1,3 +1,4 @@
+import type Stripe from 'stripe';
 import { sequelize } from '#db/client.ts';
 import { InboxEvent } from '#db/models/index.ts';
 import { env } from '../env.ts';
@@ -16,6 +17,22 @@ function requirePresent(signature: string): void {
   }
 }
 
+/** Our own events and those of connected accounts come by endpoints of their own, each with its secret. */
+function readEvent(rawText: string, signature: string): Stripe.Event {
+  const secrets = [env.STRIPE_WEBHOOK_SECRET, env.STRIPE_CONNECT_WEBHOOK_SECRET].filter(
+    (secret) => secret !== undefined,
+  );
+  let cause: unknown;
+  for (const secret of secrets) {
+    try {
+      return payments.webhooks.constructEvent(rawText, signature, secret, TOLERANCE_SECONDS);
+    } catch (error) {
+      cause = error;
+    }
+  }
+  return refuse('BAD_INPUT', { detail: 'The signature does not hold.', cause });
+}
+
 /** The one id of an event's object; all that is ever taken from an event. */
 function objectIdOf(object: unknown): string {
   return typeof object === 'object' && object !== null && 'id' in object && typeof object.id === 'string'
@@ -31,17 +48,7 @@ function objectIdOf(object: unknown): string {
 export async function receiveEvent(rawText: string, signature: string | null): Promise<void> {
   if (!signature) refuse('BAD_INPUT', { detail: 'The signature is missing.' });
   requirePresent(signature);
-  let event;
-  try {
-    event = payments.webhooks.constructEvent(
-      rawText,
-      signature,
-      env.STRIPE_WEBHOOK_SECRET,
-      TOLERANCE_SECONDS,
-    );
-  } catch (cause) {
-    return refuse('BAD_INPUT', { detail: 'The signature does not hold.', cause });
-  }
+  const event = readEvent(rawText, signature);
   const { id, type } = event;
   const objectId = objectIdOf(event.data.object);
   await sequelize.transaction(async (transaction) => {

@@ -2,6 +2,7 @@ import { InboxEvent } from '#db/models/index.ts';
 import { log } from '../log.ts';
 import { payments } from '../payments/client.ts';
 import { settlePaymentAccount } from '../sales/settle-payment-account.ts';
+import { settleFee } from './settle-fee.ts';
 import { settleOrder } from './settle-order.ts';
 import { settleRefunds } from './settle-refunds.ts';
 
@@ -33,6 +34,7 @@ const WORK: Record<string, (objectId: string) => Promise<unknown>> = {
   'checkout.session.async_payment_succeeded': settleOrder,
   'checkout.session.async_payment_failed': settleOrder,
   'checkout.session.expired': settleOrder,
+  'charge.updated': settleFee,
   'charge.refunded': settleCharge,
   'refund.created': settleRefund,
   'refund.updated': settleRefund,
