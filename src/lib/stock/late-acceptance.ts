@@ -2,6 +2,8 @@
 export interface LateAcceptance {
   start: (value: number) => void;
   accepts: (value: number) => boolean;
+  /** The last value measured anew, after what is measured has changed. */
+  renew: (value: number) => void;
 }
 
 /** Creates an acceptance that looks `length` steps back. */
@@ -14,6 +16,9 @@ export function createLateAcceptance(length: number): LateAcceptance {
       current = value;
       history.fill(value);
       at = 0;
+    },
+    renew(value) {
+      current = value;
     },
     accepts(value) {
       const isTaken = value <= current || value <= (history[at] as number);

@@ -3,6 +3,7 @@ import { createLateAcceptance } from './late-acceptance.ts';
 import { createRandom } from './random.ts';
 import type { SheetModel } from './sheet-model.ts';
 import { type SheetState, createSheetState } from './sheet-state.ts';
+import { SIZE_ORDERS, createUnitOrders } from './unit-orders.ts';
 
 /**
  * Goal-driven ruin and recreate on cut trees with late acceptance, after Gardeyn and Wauters (arXiv 2508.19306): the limit on
@@ -23,7 +24,10 @@ const JOINED = 0.3;
 const CLOSE_FIT = 0.3;
 const CLEARED = 0.05;
 /** Weight of scattered leftovers against the area of parts without a place. */
-const SCATTER = 0.02;
+const SCATTER = 0.005;
+/** Every so many steps the parts then without a place gain so much weight, until the search finds room for the awkward ones. */
+const LEARN_EVERY = 16;
+const LEARN = 0.01;
 /** Steps between two looks at the caller's clock. */
 const STEPS_PER_LOOK = 16;
 /** Of every ten slices of search one goes into gathering the leftovers of the best layout. */
@@ -51,23 +55,6 @@ export interface SheetSearchOptions {
   onGathered: (found: FoundSheets) => void;
 }
 
-/** The orders in which parts are put in, as keys of which the largest comes first. */
-const ORDERS: ((x: number, y: number) => number)[] = [
-  (x, y) => x * y,
-  (x, y) => Math.max(x, y) + Math.min(x, y) * 1e-3,
-  (x, y) => x + y,
-  (x, y) => x + y * 1e-3,
-  (x, y) => y + x * 1e-3,
-  (x, y) => Math.min(x, y),
-];
-/** Upper ends of the shares in which the search draws orders; beyond the last, at random. */
-const DRAWN: [number, number][] = [
-  [0.5, 0],
-  [0.7, 1],
-  [0.85, 2],
-  [0.9, 5],
-];
-
 /** Searches until the steps are spent or the caller says stop; an empty layout is found at once where there is nothing to cut. */
 export function searchSheets(model: SheetModel, options: SheetSearchOptions): void {
   const random = createRandom(options.seed);
@@ -76,29 +63,8 @@ export function searchSheets(model: SheetModel, options: SheetSearchOptions): vo
   for (let s = 0; s < price.length; s++)
     largest = Math.max(largest, (model.stockX[s] as number) * (model.stockY[s] as number));
   const area = Float64Array.from(partX, (x, kind) => (x * (partY[kind] as number)) / largest);
-  const keys = ORDERS.map((order) => Float64Array.from(partX, (x, kind) => order(x, partY[kind] as number)));
-  const key = new Float64Array(model.units);
-
-  /** Sorts a list of units by an order, largest first; short lists, so by insertion. */
-  function sortUnits(units: number[], order: number): void {
-    const of = keys[order];
-    for (const unit of units) key[unit] = of ? (of[kindOf[unit] as number] as number) : random();
-    for (let a = 1; a < units.length; a++) {
-      const unit = units[a] as number;
-      let b = a - 1;
-      while (b >= 0 && (key[units[b] as number] as number) < (key[unit] as number)) {
-        units[b + 1] = units[b] as number;
-        b--;
-      }
-      units[b + 1] = unit;
-    }
-  }
-
-  function drawOrder(): number {
-    const r = random();
-    for (const [end, order] of DRAWN) if (r < end) return order;
-    return ORDERS.length;
-  }
+  const weight = new Float64Array(partX.length).fill(1);
+  const orders = createUnitOrders(model, weight, random);
 
   function areaOut(units: number[]): number {
     let sum = 0;
@@ -151,7 +117,7 @@ export function searchSheets(model: SheetModel, options: SheetSearchOptions): vo
     }
     if (!model.isRipFirst && random() < JOINED) state.joinOut();
     state.isCloseFit = random() < CLOSE_FIT;
-    sortUnits(state.out, drawOrder());
+    orders.sort(state.out, orders.draw());
     state.recreate(BLINK);
   }
 
@@ -196,17 +162,33 @@ export function searchSheets(model: SheetModel, options: SheetSearchOptions): vo
 
   // First answers: everything at once, in each order.
   const state = createSheetState(model, random);
-  for (let order = 0; order < ORDERS.length; order++) {
+  for (let order = 0; order < SIZE_ORDERS; order++) {
     if (order > 0 && (bestCost <= options.lowerBound || !mayGoOn())) break;
     state.reset();
-    sortUnits(state.out, order);
+    orders.sort(state.out, order);
     state.recreate(0);
     offer(state);
     if (order > 0) steps++;
   }
 
   const reducing = createLateAcceptance(HISTORY);
-  const measureReduced = () => areaOut(state.out) - SCATTER * leftoverOf(state);
+  function measureReduced(): number {
+    let sum = -SCATTER * leftoverOf(state);
+    for (const unit of state.out) {
+      const kind = kindOf[unit] as number;
+      sum += (area[kind] as number) * (weight[kind] as number);
+    }
+    return sum;
+  }
+  /** Makes the parts that are out now count for more. */
+  function learn(): void {
+    for (const unit of state.out) {
+      const kind = kindOf[unit] as number;
+      weight[kind] = (weight[kind] as number) + LEARN;
+    }
+    reducing.renew(measureReduced());
+  }
+
   /** Sets the goal below the best cost, and gives stock back until it is kept. */
   function aimLower(): void {
     state.load(bestTrees);
@@ -231,6 +213,7 @@ export function searchSheets(model: SheetModel, options: SheetSearchOptions): vo
       }
     }
     state.begin();
+    weight.fill(1);
     reducing.start(measureReduced());
   }
 
@@ -251,6 +234,7 @@ export function searchSheets(model: SheetModel, options: SheetSearchOptions): vo
         aimLower();
       } else if (reducing.accepts(measureReduced())) state.keep();
       else state.undo();
+      if (steps % LEARN_EVERY === 0) learn();
     }
   }
 

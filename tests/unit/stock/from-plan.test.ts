@@ -59,6 +59,8 @@ function plan(materials: ResolvedMaterial[], parts: ResolvedPart[]): ResolvedPla
     tools: [],
     requirements: [],
     cautions: [],
+    views: [],
+    templates: [],
     shelves: [],
     steps: [],
     body: [],
