@@ -1,0 +1,155 @@
+import { formatMass, formatNumber } from '#lib/units/format-measure.ts';
+import { formatMoney } from '#lib/money/format-money.ts';
+import type { ResolvedChoice, ResolvedPlan, ResolvedSize } from '#lib/plan/types.ts';
+
+import { cleanText } from './clean-text.ts';
+import { setParagraph, turnPage, words, type Flow } from './flow.ts';
+import { breakLines, lengthInline, type Inline } from './inline.ts';
+import { setFigure } from './figures.ts';
+import { INK, PENCIL, RULE } from './sheet.ts';
+import type { BookInput } from './types.ts';
+
+const FACT = 9.5;
+const ROW = 17;
+const SKILL = ['', 'first piece', 'some practice', 'practised', 'experienced', 'master'] as const;
+
+interface Fact {
+  label: string;
+  value: Inline[];
+}
+
+const say = (text: string): Inline => words(cleanText(text), { size: FACT });
+
+function sizeValue(size: Pick<ResolvedSize, 'kind' | 'value'>, units: ResolvedPlan['units']): Inline {
+  if (size.kind === 'length') return lengthInline(size.value, units, FACT * 1.05);
+  return say(size.kind === 'angle' ? `${formatNumber(size.value, 2)}°` : formatNumber(size.value));
+}
+
+function choiceValue(choice: ResolvedChoice): Inline {
+  const option = choice.options.find((each) => each.value === choice.value);
+  return say(option?.label ?? String(choice.value));
+}
+
+function fitFacts({ resolved }: BookInput): Fact[] {
+  return [
+    ...resolved.sizes.map((size) => ({ label: size.label, value: [sizeValue(size, resolved.units)] })),
+    ...resolved.choices.map((choice) => ({ label: choice.label, value: [choiceValue(choice)] })),
+    ...resolved.materials
+      .filter((material) => material.measured)
+      .map((material) => ({
+        label: `${material.label}, ${material.thickness === material.nominal ? 'as sold' : 'measured'}`,
+        value: [lengthInline(material.thickness, resolved.units, FACT * 1.05)],
+      })),
+  ];
+}
+
+function pieceFacts({ resolved, front }: BookInput): Fact[] {
+  const { units, overall } = resolved;
+  const length = (nm: number) => lengthInline(nm, units, FACT * 1.05);
+  const facts: Fact[] = [];
+  if (overall)
+    facts.push(
+      { label: 'Width over all', value: [length(overall.width)] },
+      { label: 'Depth over all', value: [length(overall.depth)] },
+      { label: 'Height over all', value: [length(overall.height)] },
+    );
+  facts.push(
+    { label: 'Units', value: [say(units === 'mm' ? 'millimetres' : 'inches')] },
+    { label: 'Skill', value: [say(`${front.skill} of 5, ${SKILL[front.skill]}`)] },
+    { label: 'Hours of work', value: [say(`${front.hours[0]} to ${front.hours[1]}`)] },
+  );
+  if (resolved.massKg !== undefined)
+    facts.push({ label: 'Mass, about', value: [say(formatMass(resolved.massKg, units))] });
+  for (const cost of resolved.costs)
+    facts.push({ label: 'Stock and hardware, about', value: [say(formatMoney(cost.minor, cost.currency))] });
+  return facts;
+}
+
+function setFacts(flow: Flow, title: string, facts: readonly Fact[], x: number, width: number): number {
+  const { pen, faces } = flow;
+  let y = flow.y;
+  pen.text(title, x, y + 10, { face: 'semibold', size: 10 });
+  y += 15;
+  pen.line(x, y, x + width, y, 0.7, INK);
+  for (const fact of facts) {
+    const lines = breakLines(fact.value, width * 0.46, faces.measure);
+    const label = breakLines(
+      [words(cleanText(fact.label), { size: FACT, color: PENCIL })],
+      width * 0.52,
+      faces.measure,
+    );
+    const rows = Math.max(lines.length, label.length);
+    label.forEach((line, index) => line.draw(pen, x, y + 12 + index * 12));
+    lines.forEach((line, index) => line.draw(pen, x + width - line.width, y + 12 + index * 12));
+    y += ROW + (rows - 1) * 12;
+    pen.line(x, y, x + width, y, 0.4, RULE);
+  }
+  return y;
+}
+
+/** Sets the first sheet: title, imprint, picture, and the fit that everything after it is worked out for. */
+export function setCover(flow: Flow, input: BookInput): void {
+  const { sheet, faces } = flow;
+  const { front, imprint } = input;
+  flow.pen.text(cleanText(imprint), sheet.left, flow.y + 6, { face: 'regular', size: 11, color: PENCIL });
+  const letter = `Revision ${cleanText(input.revision.letter)}, ${input.revision.date}`;
+  flow.pen.textTo(letter, sheet.right, flow.y + 6, { face: 'regular', size: 11, color: PENCIL });
+  flow.y += 34;
+  flow.bookmarks.push({ title: front.title, level: 1, page: 0, y: 0 });
+  const wide = sheet.right - sheet.left;
+  for (const line of breakLines(
+    [words(cleanText(front.title), { face: 'semibold', size: 30 })],
+    wide,
+    faces.measure,
+  ).slice(0, 4)) {
+    line.draw(flow.pen, sheet.left, flow.y + 24);
+    flow.y += 36;
+  }
+  flow.y += 6;
+  setParagraph(
+    flow,
+    [words(cleanText(front.summary), { face: 'italic', size: 13 })],
+    { size: 13, leading: 19 },
+    {
+      x: sheet.left,
+      right: sheet.left + wide * 0.86,
+    },
+  );
+  flow.y += 14;
+
+  const facts = [fitFacts(input), pieceFacts(input)] as const;
+  const column = (wide - 22) / 2;
+  // Labels may take two lines, so a quarter more than one line a fact is kept free.
+  const factsHeight = Math.max(...facts.map((list) => list.length)) * ROW * 1.25 + 20;
+  const image = front.cover === undefined ? undefined : flow.images.get(front.cover);
+  if (image) {
+    const room = sheet.bottom - flow.y - factsHeight - 18;
+    const scale = Math.min(wide / image.width, Math.max(room, 120) / image.height);
+    const [width, height] = [image.width * scale, image.height * scale];
+    flow.pen.picture(image, sheet.left + (wide - width) / 2, flow.y, width, height);
+    flow.pen.box(sheet.left + (wide - width) / 2, flow.y, width, height, 0.4, INK);
+    flow.y += height + 18;
+  } else if (front.cover !== undefined) setFigure(flow, front.cover, front.title);
+  setFactColumns(flow, facts, column);
+}
+
+/** Two columns of facts; a plan with more sizes than the sheet holds goes on overleaf. */
+function setFactColumns(flow: Flow, facts: readonly [Fact[], Fact[]], column: number): void {
+  const { sheet } = flow;
+  let [left, right] = facts;
+  let isFirst = true;
+  while (left.length > 0 || right.length > 0) {
+    const room = Math.max(4, Math.floor((sheet.bottom - flow.y - 16) / (ROW * 1.25)));
+    const again = isFirst ? '' : ', continued';
+    const ends = [flow.y];
+    if (left.length > 0)
+      ends.push(setFacts(flow, `This copy’s fit${again}`, left.slice(0, room), sheet.left, column));
+    if (right.length > 0)
+      ends.push(setFacts(flow, `The piece${again}`, right.slice(0, room), sheet.right - column, column));
+    flow.y = Math.max(...ends) + 12;
+    left = left.slice(room);
+    right = right.slice(room);
+    isFirst = false;
+    if (left.length > 0 || right.length > 0) turnPage(flow);
+  }
+}
