@@ -165,6 +165,32 @@ describe('the command line', { timeout: 60_000 }, () => {
     expect(z.object({ holds: z.boolean() }).parse(JSON.parse(bad.out))).toEqual({ holds: false });
   });
 
+  it('lays a plan out on its stock', async () => {
+    const { code, out } = await plan('layout', example, '--kerf', '3.2 mm', '--steps', '500', '--json');
+    const { layouts } = z
+      .object({
+        layouts: z.array(
+          z.object({
+            material: z.string(),
+            pieces: z.array(z.object({ placements: z.array(z.unknown()) })),
+            unplaced: z.array(z.unknown()),
+          }),
+        ),
+      })
+      .parse(JSON.parse(out));
+    const laid = layouts.map(({ material, pieces, unplaced }) => [
+      material,
+      pieces.reduce((sum, piece) => sum + piece.placements.length, 0),
+      unplaced.length,
+    ]);
+    expect(laid).toEqual([
+      ['ply', 9, 0],
+      ['thin', 1, 0],
+      ['oak', 1, 0],
+    ]);
+    expect(code).toBe(0);
+  });
+
   it.each([
     [[], 'usage: plan check FILE [--json]'],
     [['frobnicate'], 'usage: plan check FILE [--json]'],
