@@ -115,39 +115,35 @@ export function drawLayout(laid: LaidPiece, drawing: LayoutDrawing): string {
   }
   const widthOfText = (content: string, size: number) => content.length * size * FIGURE;
 
-  /** Sizes along the lower and the left edge, where there is room for them. */
-  function sizes(box: Box, length: number, across: number, fill: string): void {
-    const lengthText = drawing.formatLength(length);
-    const acrossText = drawing.formatLength(across);
-    if (box.length > widthOfText(lengthText, SMALL_TEXT) + 8 && box.width > 2.2 * SMALL_TEXT) {
-      text(
-        box.x + box.length / 2,
-        box.y + box.width - 4,
-        SMALL_TEXT,
-        print(length),
-        `text-anchor="middle" fill="${fill}"`,
-      );
+  /**
+   * Sizes along the lower and the left edge, where there is room for them beside a mark of the given radius in the middle; in a
+   * narrow strip the length stands to the left of the mark.
+   */
+  function sizes(box: Box, length: number, across: number, radius: number, fill: string): void {
+    const lengthWidth = widthOfText(drawing.formatLength(length), SMALL_TEXT);
+    const middle = box.x + box.length / 2;
+    if (box.width / 2 > radius + SMALL_TEXT + 4 && box.length > lengthWidth + 8) {
+      text(middle, box.y + box.width - 4, SMALL_TEXT, print(length), `text-anchor="middle" fill="${fill}"`);
+    } else if (box.width > SMALL_TEXT + 2 && box.length / 2 > radius + lengthWidth + 2 * SMALL_TEXT) {
+      const y = box.y + box.width / 2 + SMALL_TEXT * 0.35;
+      text(middle - radius - 8, y, SMALL_TEXT, print(length), `text-anchor="end" fill="${fill}"`);
     }
-    if (laid.width && box.width > widthOfText(acrossText, SMALL_TEXT) + 8 && box.length > 2.2 * SMALL_TEXT) {
+    const acrossWidth = widthOfText(drawing.formatLength(across), SMALL_TEXT);
+    if (laid.width && box.width > acrossWidth + 8 && box.length / 2 > radius + SMALL_TEXT + 4) {
       const x = box.x + SMALL_TEXT;
       const y = box.y + box.width / 2;
-      text(
-        x,
-        y,
-        SMALL_TEXT,
-        print(across),
-        `text-anchor="middle" fill="${fill}" transform="rotate(-90 ${round(x)} ${round(y)})"`,
-      );
+      const turn = `transform="rotate(-90 ${round(x)} ${round(y)})"`;
+      text(x, y, SMALL_TEXT, print(across), `text-anchor="middle" fill="${fill}" ${turn}`);
     }
   }
 
   function part(placed: Placement): void {
     const box = boxOf(placed);
     rectangle(box, 'fill="var(--sheet, none)" stroke="var(--ink, currentColor)" stroke-width="1.4"');
-    sizes(box, placed.length, placed.width, 'var(--ink, currentColor)');
     const x = box.x + box.length / 2;
     const y = box.y + box.width / 2;
     const radius = Math.min(MARK_RADIUS, box.length / 2.4, box.width / 2.4);
+    sizes(box, placed.length, placed.width, radius, 'var(--ink, currentColor)');
     if (radius >= SMALLEST_MARK) {
       const size = Math.min(TEXT, (2 * radius) / Math.max(1.3, placed.part.length * FIGURE + 0.5));
       out.push(
@@ -187,7 +183,7 @@ export function drawLayout(laid: LaidPiece, drawing: LayoutDrawing): string {
       box,
       `class="offcut" fill="url(#${hatch})" fill-opacity="0.5" stroke="var(--pencil, currentColor)" stroke-width="0.8" stroke-dasharray="6 4"`,
     );
-    sizes(box, offcut.length, offcut.width, 'var(--pencil, currentColor)');
+    sizes(box, offcut.length, offcut.width, 0, 'var(--pencil, currentColor)');
   }
   for (const placed of laid.placements) part(placed);
 
