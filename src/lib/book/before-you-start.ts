@@ -93,7 +93,7 @@ export function setLoads(flow: Flow, input: BookInput): void {
         { draw: (pen, x, baseline) => void drawPartMark(pen, shelf.part, x, baseline) },
         [lengthInline(shelf.span, units, SIZE)],
         [say(`${formatMass(shelf.loadKg, units)}${shelf.at === 'middle' ? ' in the middle' : ''}`)],
-        [words(formatLength(shelf.sag, { units, denominator: 64 }).text, { face: 'mono', size: SIZE * 0.9 })],
+        [{ kind: 'length', length: formatLength(shelf.sag, { units, denominator: 64 }), size: SIZE * 0.9 }],
         [say(holds ? 'holds' : 'exceeded: stiffen it or carry less')],
       ];
     }),

@@ -2,6 +2,7 @@ import { formatNumber } from '#lib/units/format-measure.ts';
 
 import { cleanText } from './clean-text.ts';
 import { setParagraph, setSection, setSubheading, skip, words, type Flow } from './flow.ts';
+import { unitWord } from './shopping-list.ts';
 import { setTable, type Cell } from './table.ts';
 import type { BookInput } from './types.ts';
 
@@ -28,7 +29,7 @@ export function setFinishOrder(flow: Flow, number: string, input: BookInput): vo
       [say(`${index + 1}`)],
       [say(item.name)],
       [say(formatNumber(item.coats))],
-      [say(`${formatNumber(item.amount, 2)} ${item.unit}`)],
+      [say(`${formatNumber(item.amount, 2)} ${unitWord(item.unit, item.amount)}`)],
     ]),
     flow.sheet.text,
   );

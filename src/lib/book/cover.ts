@@ -3,8 +3,8 @@ import { formatMoney } from '#lib/money/format-money.ts';
 import type { ResolvedChoice, ResolvedPlan, ResolvedSize } from '#lib/plan/types.ts';
 
 import { cleanText } from './clean-text.ts';
-import { setParagraph, turnPage, words, type Flow } from './flow.ts';
-import { breakLines, lengthInline, type Inline } from './inline.ts';
+import { needRoom, setParagraph, turnPage, words, type Flow } from './flow.ts';
+import { breakLines, lengthInline, type Inline, type Line } from './inline.ts';
 import { setFigure } from './figures.ts';
 import { INK, PENCIL, RULE } from './sheet.ts';
 import type { BookInput } from './types.ts';
@@ -87,9 +87,19 @@ function setFacts(flow: Flow, title: string, facts: readonly Fact[], x: number, 
   return y;
 }
 
+/** A title's lines, as even as they can be without taking one line more. */
+function balanceLines(flow: Flow, title: string, width: number): Line[] {
+  const set = (measure: number) =>
+    breakLines([words(cleanText(title), { face: 'semibold', size: 30 })], measure, flow.faces.measure);
+  const least = set(width).length;
+  let narrowest = width;
+  while (narrowest > width / 2 && set(narrowest - 12).length === least) narrowest -= 12;
+  return set(narrowest);
+}
+
 /** Sets the first sheet: title, imprint, picture, and the fit that everything after it is worked out for. */
 export function setCover(flow: Flow, input: BookInput): void {
-  const { sheet, faces } = flow;
+  const { sheet } = flow;
   const { front, imprint } = input;
   flow.pen.text(cleanText(imprint), sheet.left, flow.y + 6, { face: 'regular', size: 11, color: PENCIL });
   const letter = `Revision ${cleanText(input.revision.letter)}, ${input.revision.date}`;
@@ -97,11 +107,7 @@ export function setCover(flow: Flow, input: BookInput): void {
   flow.y += 34;
   flow.bookmarks.push({ title: front.title, level: 1, page: 0, y: 0 });
   const wide = sheet.right - sheet.left;
-  for (const line of breakLines(
-    [words(cleanText(front.title), { face: 'semibold', size: 30 })],
-    wide,
-    faces.measure,
-  ).slice(0, 4)) {
+  for (const line of balanceLines(flow, front.title, wide).slice(0, 4)) {
     line.draw(flow.pen, sheet.left, flow.y + 24);
     flow.y += 36;
   }
@@ -127,7 +133,6 @@ export function setCover(flow: Flow, input: BookInput): void {
     const scale = Math.min(wide / image.width, Math.max(room, 120) / image.height);
     const [width, height] = [image.width * scale, image.height * scale];
     flow.pen.picture(image, sheet.left + (wide - width) / 2, flow.y, width, height);
-    flow.pen.box(sheet.left + (wide - width) / 2, flow.y, width, height, 0.4, INK);
     flow.y += height + 18;
   } else if (front.cover !== undefined) setFigure(flow, front.cover, front.title);
   setFactColumns(flow, facts, column);
@@ -138,6 +143,7 @@ function setFactColumns(flow: Flow, facts: readonly [Fact[], Fact[]], column: nu
   const { sheet } = flow;
   let [left, right] = facts;
   let isFirst = true;
+  needRoom(flow, 4 * ROW * 1.25 + 16);
   while (left.length > 0 || right.length > 0) {
     const room = Math.max(4, Math.floor((sheet.bottom - flow.y - 16) / (ROW * 1.25)));
     const again = isFirst ? '' : ', continued';

@@ -1,7 +1,7 @@
 import { cleanText } from './clean-text.ts';
 import { needRoom, setParagraph, skip, SMALL, words, type Flow } from './flow.ts';
 import { breakLines } from './inline.ts';
-import { INK, PENCIL } from './sheet.ts';
+import { PENCIL } from './sheet.ts';
 
 const MAX_HEIGHT = 250;
 
@@ -29,7 +29,6 @@ export function setFigure(flow: Flow, src: string, alt: string, caption?: string
   skip(flow, 3);
   needRoom(flow, drawnHeight + lines * SMALL.leading + 14);
   flow.pen.picture(image, sheet.text, flow.y, drawnWidth, drawnHeight);
-  flow.pen.box(sheet.text, flow.y, drawnWidth, drawnHeight, 0.4, INK);
   flow.y += drawnHeight + 4;
   if (caption) setParagraph(flow, inlines, SMALL);
   skip(flow, 8);

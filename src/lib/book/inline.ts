@@ -1,6 +1,7 @@
 import { formatLength, type FormattedLength } from '#lib/units/format-length.ts';
 import type { UnitSystem } from '#lib/units/length.ts';
 
+import { drawNumerals, numeralsWidth } from './numerals.ts';
 import type { Pen, TextStyle } from './pen.ts';
 import { INK } from './sheet.ts';
 
@@ -8,6 +9,7 @@ import { INK } from './sheet.ts';
 export type Inline =
   | { kind: 'text'; text: string; style: TextStyle; href?: string }
   | { kind: 'length'; length: FormattedLength; size: number; color?: string }
+  | { kind: 'numerals'; text: string; size: number; color?: string }
   | { kind: 'break' };
 
 /** One line of a paragraph, broken and measured. */
@@ -60,7 +62,7 @@ export function lengthWidth(measure: Pen['measure'], length: FormattedLength, si
   const { lead, fraction, tail } = piecesOf(length);
   const gap = fraction && lead !== '' ? size * 0.08 : 0;
   return (
-    measure('mono', lead, size) +
+    numeralsWidth(measure, lead, size) +
     gap +
     (fraction ? fractionWidth(measure, fraction, size) : 0) +
     measure('mono', tail, size)
@@ -97,8 +99,8 @@ export function drawLength(
   const full = { size: style.size, color: style.color ?? INK };
   const text = { face: 'mono', ...full } as const;
   if (!fraction) {
-    pen.text(lead, x, baseline, text);
-    return pen.measure('mono', lead, style.size);
+    drawNumerals(pen, lead, x, baseline, full);
+    return numeralsWidth(pen.measure, lead, style.size);
   }
   let at = x;
   pen.readAs(length.text, () => {
@@ -122,17 +124,21 @@ export function drawAligned(
   baseline: number,
   size: number,
 ): void {
-  const text = { face: 'mono', size } as const;
   if (length.units === 'mm') {
     const figures = length.text.replace(/ mm$/, '');
     const whole = /^−?\d+/.exec(figures)?.[0] ?? figures;
-    pen.text(figures, align - pen.measure('mono', whole, size), baseline, text);
+    drawNumerals(pen, figures, align - pen.measure('mono', whole, size), baseline, { size });
     return;
   }
   const { lead, fraction } = piecesOf(length);
   const whole = fraction ? lead : lead.replace(/[+−]?"$/, '');
   const gap = fraction && lead !== '' ? size * 0.08 : 0;
   drawLength(pen, length, align - gap - pen.measure('mono', whole, size), baseline, { size });
+}
+
+/** Figures other than lengths, such as money. */
+export function numerals(text: string, size: number): Inline {
+  return { kind: 'numerals', text, size };
 }
 
 /** A length as it stands in running text. */
@@ -151,6 +157,11 @@ function atomsOf(inlines: readonly Inline[], measure: Pen['measure'], maxWidth: 
     }
     if (inline.kind === 'length') {
       atoms.push({ inline, text: '', width: lengthWidth(measure, inline.length, inline.size), space });
+      space = undefined;
+      continue;
+    }
+    if (inline.kind === 'numerals') {
+      atoms.push({ inline, text: '', width: numeralsWidth(measure, inline.text, inline.size), space });
       space = undefined;
       continue;
     }
@@ -249,12 +260,19 @@ function lineOf(atoms: readonly Atom[], width: number): Line {
           if (pending?.inline === inline) pending.text += (space > 0 ? ' ' : '') + atom.text;
           else {
             // The space is drawn, not only left free, so that copied words do not run together.
+            if (pending && space > 0) pending.text += ' ';
             flush();
-            pending =
-              space > 0 ? { text: ` ${atom.text}`, x: at, inline } : { text: atom.text, x: at, inline };
+            pending = { text: atom.text, x: at + space, inline };
           }
           at += space + atom.width;
+        } else if (inline.kind === 'numerals') {
+          if (pending && space > 0) pending.text += ' ';
+          flush();
+          at += space;
+          drawNumerals(pen, inline.text, at, baseline, inline);
+          at += atom.width;
         } else if (inline.kind === 'length') {
+          if (pending && space > 0) pending.text += ' ';
           flush();
           at += space;
           at += drawLength(pen, inline.length, at, baseline, inline);

@@ -1,14 +1,12 @@
 import type { ResolvedPart, ResolvedPlan } from '#lib/plan/types.ts';
 import { formatAlike, REMAINDER_LEGEND, type FormattedLength } from '#lib/units/format-length.ts';
 
-import { setParagraph, setSection, setSubheading, skip, SMALL, words, type Flow } from './flow.ts';
-import { drawAligned } from './inline.ts';
+import { needRoom, setParagraph, setSection, setSubheading, skip, SMALL, words, type Flow } from './flow.ts';
+import { breakLines, drawAligned, numerals } from './inline.ts';
 import { drawPartMark } from './part-mark.ts';
 import { PENCIL } from './sheet.ts';
 import { setTable, TICK, type Cell, type Column } from './table.ts';
 import { describeWorkings } from './shape-words.ts';
-import { breakLines } from './inline.ts';
-import { needRoom } from './flow.ts';
 
 const FIGURE = 9.5;
 const GRAIN = { length: 'along', width: 'across', none: 'any way' } as const;
@@ -58,7 +56,7 @@ export function setPartsTable(flow: Flow, number: string, resolved: ResolvedPlan
       TICK,
       { draw: (pen, x, baseline) => void drawPartMark(pen, part.mark, x, baseline) },
       text(part.name),
-      [words(String(part.qty), { face: 'mono', size: FIGURE })],
+      [numerals(String(part.qty), FIGURE)],
       lengthCell(shown[index * 3], dimensions.align),
       lengthCell(shown[index * 3 + 1], dimensions.align),
       lengthCell(shown[index * 3 + 2], dimensions.align),
@@ -103,7 +101,7 @@ function setPartWorkings(flow: Flow, part: ResolvedPart, resolved: ResolvedPlan)
   needRoom(flow, Math.max(2, first) * LEADING);
   const baseline = flow.y + 11.5;
   const width = drawPartMark(flow.pen, part.mark, sheet.left, baseline);
-  const name = breakLines([words(part.name, { size: 9.5 })], indent - 4, faces.measure);
+  const name = breakLines([words(part.name, { size: 9.5 })], indent - 10, faces.measure);
   name
     .slice(0, 2)
     .forEach((line, index) =>

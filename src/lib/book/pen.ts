@@ -1,5 +1,5 @@
-import { PDFHexString, PDFName, PDFOperator, PDFPage, PDFString, PDFOperatorNames as Op } from 'pdf-lib';
-import type { PDFFont, PDFImage, PDFRef } from 'pdf-lib';
+import { PDFHexString, PDFName, PDFOperator, PDFString, PDFOperatorNames as Op } from 'pdf-lib';
+import type { PDFFont, PDFImage, PDFRef, PDFPage } from 'pdf-lib';
 
 import type { FaceName, Faces } from './faces.ts';
 import { INK } from './sheet.ts';

@@ -8,6 +8,7 @@ import { setCover } from './cover.ts';
 import { loadFaces } from './faces.ts';
 import { needRoom, setSection, startFlow, turnPage, type Flow } from './flow.ts';
 import { writeOutline } from './outline.ts';
+import type { ResolvedProse } from '#lib/plan/types.ts';
 import { setPartsTable } from './parts-table.ts';
 import { setProse } from './prose-blocks.ts';
 import { sheetOf } from './sheet.ts';
@@ -48,14 +49,33 @@ function usedPictures(input: BookInput): Map<string, BookPicture> {
   return new Map([...input.pictures].filter(([name]) => text.includes(JSON.stringify(name))));
 }
 
+/** Cautions of the whole plan stand together in a section of their own, so the story need not say them too. */
+function withoutCautions(prose: ResolvedProse): ResolvedProse {
+  return prose
+    .filter((node) => node.node !== 'caution')
+    .map((node) =>
+      node.node === 'paragraph' ? { ...node, children: withoutCautions(node.children) } : node,
+    );
+}
+
+/** Whether a node of the story leaves a trace on the page: steps and tables are set elsewhere. */
+function isShown(node: ResolvedProse[number]): boolean {
+  if (node.node === 'paragraph') return node.children.some(isShown);
+  if (node.node === 'text') return node.text.trim() !== '';
+  return node.node !== 'step' && node.node !== 'place' && node.node !== 'break';
+}
+
 function setContent(flow: Flow, input: BookInput): void {
   const { resolved } = input;
   let count = 0;
   const number = () => String((count += 1));
   setCover(flow, input);
   turnPage(flow);
-  setSection(flow, number(), 'About the piece');
-  setProse(flow, resolved.body, resolved.units);
+  const story = withoutCautions(resolved.body);
+  if (story.some(isShown)) {
+    setSection(flow, number(), 'About the piece');
+    setProse(flow, story, resolved.units);
+  }
   setSection(flow, number(), 'Before you start', 90);
   setCautions(flow, input);
   setTools(flow, input);

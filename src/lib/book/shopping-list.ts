@@ -5,14 +5,14 @@ import { formatArea, formatNumber, formatRun, formatVolume } from '#lib/units/fo
 
 import { cleanText } from './clean-text.ts';
 import { setParagraph, setSection, setSubheading, skip, SMALL, words, type Flow } from './flow.ts';
-import { lengthInline, type Inline } from './inline.ts';
+import { lengthInline, numerals, type Inline } from './inline.ts';
 import { BLUE, PENCIL } from './sheet.ts';
 import { setTable, TICK, type Cell, type Column } from './table.ts';
 
 const SIZE = 9.5;
 const say = (text: string, color?: string): Inline =>
   words(cleanText(text), { size: SIZE, ...(color && { color }) });
-const figure = (text: string): Inline => words(text, { face: 'mono', size: SIZE * 0.92 });
+const figure = (text: string): Inline => numerals(text, SIZE * 0.92);
 
 function money(price: WrittenPrice | undefined, minor: number | undefined): Cell {
   return price && minor !== undefined ? [figure(formatMoney(minor, price.currency))] : [];
@@ -39,6 +39,12 @@ function quantityOf(material: ResolvedMaterial, units: ResolvedPlan['units']): s
   return units === 'in'
     ? `${formatNumber(material.boardFeet, 1)} board feet`
     : formatVolume(material.volumeM3, units);
+}
+
+/** A litre is spelled out: its sign is easily read as a one. */
+export function unitWord(unit: string, amount: number): string {
+  if (unit !== 'l') return unit;
+  return amount === 1 ? 'litre' : 'litres';
 }
 
 /** Sets what to buy: stock, hardware and consumables, with boxes to tick and the written prices. */
@@ -122,7 +128,7 @@ export function setShoppingList(flow: Flow, number: string, resolved: ResolvedPl
             PENCIL,
           ),
         ],
-        [say(`${formatNumber(item.amount, 2)} ${item.unit}`)],
+        [say(`${formatNumber(item.amount, 2)} ${unitWord(item.unit, item.amount)}`)],
         money(item.price, item.costMinor),
       ]),
     );
@@ -131,7 +137,7 @@ export function setShoppingList(flow: Flow, number: string, resolved: ResolvedPl
   for (const cost of resolved.costs)
     setParagraph(flow, [
       words('Altogether about ', { face: 'semibold' }),
-      words(formatMoney(cost.minor, cost.currency), { face: 'mono', size: 9.6 }),
+      numerals(formatMoney(cost.minor, cost.currency), 9.6),
       words(' at the prices written in the plan; your dealer’s will differ.'),
     ]);
 }

@@ -1,4 +1,5 @@
-import { PDFDocument, PDFHexString, PDFName, PDFOperator, PDFOperatorNames as Op } from 'pdf-lib';
+import type { PDFHexString } from 'pdf-lib';
+import { PDFDocument, PDFName, PDFOperator, PDFOperatorNames as Op } from 'pdf-lib';
 
 import { cleanText } from './clean-text.ts';
 import { findCopySlot } from './copy-slot.ts';
