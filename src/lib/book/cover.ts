@@ -11,6 +11,9 @@ import type { BookInput } from './types.ts';
 
 const FACT = 9.5;
 const ROW = 17;
+/** Height of a column's heading, and the least height of the cover picture, in points. */
+const FACTS_HEAD = 15;
+const LEAST_PICTURE = 120;
 const SKILL = ['', 'first piece', 'some practice', 'practised', 'experienced', 'master'] as const;
 
 interface Fact {
@@ -65,26 +68,48 @@ function pieceFacts({ resolved, front }: BookInput): Fact[] {
   return facts;
 }
 
-function setFacts(flow: Flow, title: string, facts: readonly Fact[], x: number, width: number): number {
-  const { pen, faces } = flow;
+interface FactLines {
+  label: Line[];
+  value: Line[];
+  height: number;
+}
+
+function breakFact(flow: Flow, fact: Fact, width: number): FactLines {
+  const { measure } = flow.faces;
+  const label = breakLines(
+    [words(cleanText(fact.label), { size: FACT, color: PENCIL })],
+    width * 0.56,
+    measure,
+  );
+  const value = breakLines(fact.value, width * 0.42, measure);
+  return { label, value, height: ROW + (Math.max(label.length, value.length, 1) - 1) * 12 };
+}
+
+const heightOf = (facts: readonly FactLines[]) => facts.reduce((sum, fact) => sum + fact.height, FACTS_HEAD);
+
+/** Draws the facts that fit above the foot of the page and gives the others. */
+function setFacts(
+  flow: Flow,
+  title: string,
+  facts: readonly FactLines[],
+  place: { x: number; width: number },
+): { rest: readonly FactLines[]; end: number } {
+  const { pen } = flow;
+  const { x, width } = place;
   let y = flow.y;
   pen.text(title, x, y + 10, { face: 'semibold', size: 10 });
-  y += 15;
+  y += FACTS_HEAD;
   pen.line(x, y, x + width, y, 0.7, INK);
+  let count = 0;
   for (const fact of facts) {
-    const lines = breakLines(fact.value, width * 0.46, faces.measure);
-    const label = breakLines(
-      [words(cleanText(fact.label), { size: FACT, color: PENCIL })],
-      width * 0.52,
-      faces.measure,
-    );
-    const rows = Math.max(lines.length, label.length);
-    label.forEach((line, index) => line.draw(pen, x, y + 12 + index * 12));
-    lines.forEach((line, index) => line.draw(pen, x + width - line.width, y + 12 + index * 12));
-    y += ROW + (rows - 1) * 12;
+    if (y + fact.height > flow.sheet.bottom && count > 0) break;
+    fact.label.forEach((line, index) => line.draw(pen, x, y + 12 + index * 12));
+    fact.value.forEach((line, index) => line.draw(pen, x + width - line.width, y + 12 + index * 12));
+    y += fact.height;
     pen.line(x, y, x + width, y, 0.4, RULE);
+    count += 1;
   }
-  return y;
+  return { rest: facts.slice(count), end: y };
 }
 
 /** A title's lines, as even as they can be without taking one line more. */
@@ -123,39 +148,46 @@ export function setCover(flow: Flow, input: BookInput): void {
   );
   flow.y += 14;
 
-  const facts = [fitFacts(input), pieceFacts(input)] as const;
   const column = (wide - 22) / 2;
-  // Labels may take two lines, so a quarter more than one line a fact is kept free.
-  const factsHeight = Math.max(...facts.map((list) => list.length)) * ROW * 1.25 + 20;
+  const fit = fitFacts(input).map((fact) => breakFact(flow, fact, column));
+  const piece = pieceFacts(input).map((fact) => breakFact(flow, fact, column));
   const image = front.cover === undefined ? undefined : flow.images.get(front.cover);
   if (image) {
-    const room = sheet.bottom - flow.y - factsHeight - 18;
-    const scale = Math.min(wide / image.width, Math.max(room, 120) / image.height);
+    const room = sheet.bottom - flow.y - Math.max(heightOf(fit), heightOf(piece)) - 18;
+    const scale = Math.min(wide / image.width, Math.max(room, LEAST_PICTURE) / image.height);
     const [width, height] = [image.width * scale, image.height * scale];
     flow.pen.picture(image, sheet.left + (wide - width) / 2, flow.y, width, height);
     flow.y += height + 18;
   } else if (front.cover !== undefined) setFigure(flow, front.cover, front.title);
-  setFactColumns(flow, facts, column);
+  setFactColumns(flow, fit, piece, column);
 }
 
 /** Two columns of facts; a plan with more sizes than the sheet holds goes on overleaf. */
-function setFactColumns(flow: Flow, facts: readonly [Fact[], Fact[]], column: number): void {
+function setFactColumns(
+  flow: Flow,
+  fit: readonly FactLines[],
+  piece: readonly FactLines[],
+  width: number,
+): void {
   const { sheet } = flow;
-  let [left, right] = facts;
-  let isFirst = true;
-  needRoom(flow, 4 * ROW * 1.25 + 16);
-  while (left.length > 0 || right.length > 0) {
-    const room = Math.max(4, Math.floor((sheet.bottom - flow.y - 16) / (ROW * 1.25)));
-    const again = isFirst ? '' : ', continued';
-    const ends = [flow.y];
-    if (left.length > 0)
-      ends.push(setFacts(flow, `This copy’s fit${again}`, left.slice(0, room), sheet.left, column));
-    if (right.length > 0)
-      ends.push(setFacts(flow, `The piece${again}`, right.slice(0, room), sheet.right - column, column));
-    flow.y = Math.max(...ends) + 12;
-    left = left.slice(room);
-    right = right.slice(room);
-    isFirst = false;
-    if (left.length > 0 || right.length > 0) turnPage(flow);
+  let [left, right] = [fit, piece];
+  let again = '';
+  needRoom(flow, FACTS_HEAD + 4 * ROW);
+  for (;;) {
+    const ends: number[] = [];
+    if (left.length > 0) {
+      const set = setFacts(flow, `This copy’s fit${again}`, left, { x: sheet.left, width });
+      left = set.rest;
+      ends.push(set.end);
+    }
+    if (right.length > 0) {
+      const set = setFacts(flow, `The piece${again}`, right, { x: sheet.right - width, width });
+      right = set.rest;
+      ends.push(set.end);
+    }
+    flow.y = Math.max(flow.y, ...ends) + 12;
+    if (left.length === 0 && right.length === 0) return;
+    turnPage(flow);
+    again = ', continued';
   }
 }

@@ -4,6 +4,8 @@ import { breakLines } from './inline.ts';
 import { PENCIL } from './sheet.ts';
 
 const MAX_HEIGHT = 250;
+/** How far a picture may shrink to stay on its page. */
+const LEAST_SHARE = 0.6;
 
 /** Sets a picture with its caption under it, kept together. One that cannot be set is stood in for by its description. */
 export function setFigure(flow: Flow, src: string, alt: string, caption?: string): void {
@@ -24,9 +26,13 @@ export function setFigure(flow: Flow, src: string, alt: string, caption?: string
     skip(flow, 8);
     return;
   }
-  const scale = Math.min(width / image.width, MAX_HEIGHT / image.height);
-  const [drawnWidth, drawnHeight] = [image.width * scale, image.height * scale];
   skip(flow, 3);
+  const fullScale = Math.min(width / image.width, MAX_HEIGHT / image.height);
+  const room = sheet.bottom - flow.y - lines * SMALL.leading - 14;
+  // A little smaller beside its words is better than full size overleaf.
+  const fits = room / image.height;
+  const scale = fits < fullScale && fits >= fullScale * LEAST_SHARE ? fits : fullScale;
+  const [drawnWidth, drawnHeight] = [image.width * scale, image.height * scale];
   needRoom(flow, drawnHeight + lines * SMALL.leading + 14);
   flow.pen.picture(image, sheet.text, flow.y, drawnWidth, drawnHeight);
   flow.y += drawnHeight + 4;

@@ -30,7 +30,7 @@ export function setPartsTable(flow: Flow, number: string, resolved: ResolvedPlan
   const dimensions = units === 'mm' ? { width: 48, align: 28 } : { width: 56, align: 26 };
   const total = flow.sheet.right - flow.sheet.left;
   const fixed = 18 + 30 + 26 + 3 * dimensions.width + 44;
-  const name = (total - fixed) * 0.5;
+  const name = (total - fixed) * 0.47;
   const columns: Column[] = [
     { heading: '', width: 18 },
     { heading: 'Mark', width: 30 },
@@ -97,16 +97,14 @@ function setPartWorkings(flow: Flow, part: ResolvedPart, resolved: ResolvedPlan)
   const workings = describeWorkings(part, resolved.units, PROSE_SIZE);
   const indent = 84;
   const first = breakLines(workings[0] ?? [], sheet.right - sheet.text - 12, faces.measure).length;
+  const name = breakLines([words(part.name, { size: 9.5 })], indent - 10, faces.measure);
   skip(flow, 7);
-  needRoom(flow, Math.max(2, first) * LEADING);
+  needRoom(flow, Math.max(2, first, name.length) * LEADING);
   const baseline = flow.y + 11.5;
   const width = drawPartMark(flow.pen, part.mark, sheet.left, baseline);
-  const name = breakLines([words(part.name, { size: 9.5 })], indent - 10, faces.measure);
-  name
-    .slice(0, 2)
-    .forEach((line, index) =>
-      line.draw(flow.pen, sheet.left + Math.max(22, width + 5), baseline + index * 12),
-    );
+  name.forEach((line, index) =>
+    line.draw(flow.pen, sheet.left + Math.max(22, width + 5), baseline + index * 12),
+  );
   const top = flow.y;
   const pages = flow.pens.length;
   for (const working of workings)
@@ -120,5 +118,5 @@ function setPartWorkings(flow: Flow, part: ResolvedPart, resolved: ResolvedPlan)
           pen.text('–', sheet.text, line, { face: 'regular', size: PROSE_SIZE, color: PENCIL }),
       },
     );
-  if (flow.pens.length === pages) flow.y = Math.max(flow.y, top + Math.min(2, name.length) * 12 + 4);
+  if (flow.pens.length === pages) flow.y = Math.max(flow.y, top + name.length * 12 + 4);
 }

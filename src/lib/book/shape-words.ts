@@ -114,11 +114,18 @@ export function describeShape(shape: ResolvedShape, units: UnitSystem, size: num
   }
 }
 
+/** A taper or bevel of no angle is a square cut, which needs no words. */
+function isSquare(shape: ResolvedShape): boolean {
+  return (shape.type === 'taper' || shape.type === 'bevel') && num(shape, 'angle') === 0;
+}
+
 const capital = (text: string) => text.charAt(0).toUpperCase() + text.slice(1);
 
 /** What is done to a part besides cutting it to size, one entry a working. */
 export function describeWorkings(part: ResolvedPart, units: UnitSystem, size: number): Inline[][] {
-  const workings = part.shape.map((shape) => describeShape(shape, units, size));
+  const workings = part.shape
+    .filter((shape) => !isSquare(shape))
+    .map((shape) => describeShape(shape, units, size));
   if (part.handed && part.qty > 1)
     workings.unshift([words('Cut as a left and a right: every second piece mirrored', { size })]);
   if (part.edges.length > 0)
