@@ -1,9 +1,10 @@
-import { checkExpression, expressionOf, makeFormula } from './expressions.ts';
-import { isPictureName } from './attributes.ts';
-import type { ReadContext } from './attributes.ts';
+import { isPictureName } from './attribute-reading.ts';
+import type { ReadContext } from './attribute-reading.ts';
+import { checkExpression, makeFormula } from './expressions.ts';
 import type { Element, MdxNode } from './parse.ts';
 import { safeHref } from './safe-href.ts';
 import { placeAt } from './source.ts';
+import { expressionOf } from './syntax-tree.ts';
 import type { Place, Prose, ProseNode } from './types.ts';
 
 /** What a component in prose becomes: the index of its declaration, or null when it is no declaration or in error. */

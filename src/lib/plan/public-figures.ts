@@ -1,3 +1,4 @@
+import { given } from './given.ts';
 import type { ChoiceOption, ResolvedPlan, ResolvedSize, UnitSystem } from './types.ts';
 
 /** A material as a visitor sees it: what to buy, never what is cut from it. */
@@ -68,10 +69,6 @@ export interface PublicFigures {
 /** Up to a tenth: what a shopping list needs, and too coarse to work a part size back from. */
 function roundTotal(value: number): number {
   return Math.ceil(value * 10 - 1e-9) / 10;
-}
-
-function given<K extends string, V>(name: K, value: V | undefined): Partial<Record<K, V>> {
-  return value === undefined ? {} : ({ [name]: value } as Partial<Record<K, V>>);
 }
 
 /**

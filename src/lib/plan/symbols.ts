@@ -1,15 +1,16 @@
 import type { Expression as EsExpression } from 'estree';
 
+import type { ReadContext } from './attribute-reading.ts';
 import { readAttributes } from './attributes.ts';
-import type { ReadContext } from './attributes.ts';
 import { COMPONENTS } from './components.ts';
-import { checkExpression, expressionOf, namesIn } from './expressions.ts';
+import { checkExpression } from './expressions.ts';
 import { sortGraph } from './graph.ts';
 import type { Element, ElementAttribute, MdxNode } from './parse.ts';
 import { createProblemList } from './problems.ts';
 import { isMark, isName, isReservedName } from './scope.ts';
 import type { Meaning, Member } from './scope.ts';
 import { placeAt } from './source.ts';
+import { expressionOf, namesIn } from './syntax-tree.ts';
 import type { ChoiceOption, Kind } from './types.ts';
 
 /** The most components that a plan may have. */
