@@ -15,9 +15,9 @@ interface PublicResultsProps {
 const PIECE = { sheet: ['sheet', 'sheets'], board: ['board', 'boards'], bar: ['bar', 'bars'] } as const;
 
 function total(material: PublicFigures['materials'][number], units: UnitSystem): string {
-  if (material.kind === 'sheet') return formatArea(material.areaM2, units);
-  if (material.kind === 'bar') return formatRun(material.lengthM, units);
-  return `${formatNumber(material.boardFeet, 1)} board feet`;
+  if (material.kind === 'sheet') return formatArea(material.areaM2 ?? 0, units);
+  if (material.kind === 'bar') return formatRun(material.lengthM ?? 0, units);
+  return `${formatNumber(material.boardFeet ?? 0, 1)} board feet`;
 }
 
 /** What a plan takes at these sizes, as far as it may be known before paying. */
