@@ -1,5 +1,7 @@
 import { NM2_PER_M2 } from '#lib/units/format-measure.ts';
+import { toInches } from '#lib/units/length.ts';
 
+import { massOf } from './resolve-load.ts';
 import { stockSizes } from './resolve-parts.ts';
 import { isPresent, keptNumber, numberOf, reportFormula } from './resolving.ts';
 import type { Resolving } from './resolving.ts';
@@ -13,10 +15,12 @@ import type {
   ResolvedPart,
   WrittenPrice,
 } from './types.ts';
+import { roughInches } from './wood-figures.ts';
 
 const NM_PER_M = 1e9;
-/** A board foot is 144 cubic inches; this is its twelfth part of a cubic foot in m³, exact. */
+/** A board foot is 144 cubic inches, in m³, exact. */
 const M3_PER_BOARD_FOOT = 0.002359737216;
+const M_PER_INCH = 0.0254;
 const MAX_HARDWARE = 1_000_000;
 
 interface Totals {
@@ -79,7 +83,11 @@ function resolveMaterial(
   const thickness = keptNumber(resolving, `${name}.thickness`);
   const totals = totalsOf(parts, name);
   const sizes = stockSizes(resolving, declaration);
-  const boardFeet = totals.volumeM3 / M3_PER_BOARD_FOOT;
+  // Boards are tallied at their rough thickness (NHLA), other materials at what they measure.
+  const boardFeet =
+    kind === 'board'
+      ? (totals.areaM2 * roughInches(toInches(thickness)) * M_PER_INCH) / M3_PER_BOARD_FOOT
+      : totals.volumeM3 / M3_PER_BOARD_FOOT;
   const material: ResolvedMaterial = {
     name,
     label: declaration.label,
@@ -96,6 +104,8 @@ function resolveMaterial(
   if (declaration.species !== undefined) material.species = declaration.species;
   if (declaration.width) material.width = keptNumber(resolving, `${name}.width`);
   if (declaration.length) material.length = keptNumber(resolving, `${name}.length`);
+  const massKg = massOf(material);
+  if (massKg !== undefined) material.massKg = massKg;
   const own = resolving.prices.get(name);
   const price =
     declaration.price && (own === undefined ? declaration.price : { ...declaration.price, minor: own });

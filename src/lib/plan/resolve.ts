@@ -1,5 +1,6 @@
 import { valueOf } from './evaluate.ts';
 import { overallSize } from './overall.ts';
+import { resolveShelves, totalMass } from './resolve-load.ts';
 import { resolveParts } from './resolve-parts.ts';
 import { plainText, resolveProse } from './resolve-prose.ts';
 import { resolveConsumables, resolveHardware, resolveMaterials, sumCosts } from './resolve-stock.ts';
@@ -112,7 +113,7 @@ export function resolvePlan(plan: CompiledPlan, fit: Fit): ResolvedPlan {
     tools: [],
     requirements: [],
     cautions: [],
-    shelves: [],
+    shelves: resolveShelves(resolving, parts, materials),
     steps: [],
     views: [],
     templates: [],
@@ -178,6 +179,8 @@ export function resolvePlan(plan: CompiledPlan, fit: Fit): ResolvedPlan {
   });
   const overall = overallSize(parts);
   if (overall) resolved.overall = overall;
+  const massKg = totalMass(materials);
+  if (massKg !== undefined) resolved.massKg = massKg;
   resolved.problems = resolving.problems.items;
   return resolved;
 }
