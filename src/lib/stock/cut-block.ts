@@ -12,7 +12,10 @@ export interface CutBlock {
   needY: number[];
 }
 
-const crossOf = (direction: number) => (direction === ACROSS ? UP : ACROSS);
+/** The other direction. */
+export function crossOf(direction: number): number {
+  return direction === ACROSS ? UP : ACROSS;
+}
 
 /** A block of a single leaf. */
 export function createBlock(leaf: number, x: number, y: number, canTurn: boolean): CutBlock {
@@ -82,28 +85,58 @@ export function joinBlocks(a: CutBlock, b: CutBlock, direction: number): CutBloc
   return joined;
 }
 
-/** Puts a block into gap `at` of a tree (see `insertLeaf`; not for rip-first trees). Refresh afterwards. */
-export function insertBlock(tree: CutTree, at: number, block: CutBlock): void {
+/** Direction of the row that a piece put into gap `at` becomes part of. */
+function directionOf(tree: CutTree, at: number, isRipFirst: boolean): number {
+  const { code, parent } = tree;
+  if (at === tree.size) return (code[0] as number) === UP ? ACROSS : UP;
+  if ((code[at] as number) < 0) return code[at] as number;
+  if ((parent[at] as number) < 0) return isRipFirst ? UP : ACROSS;
+  return crossOf(code[parent[at] as number] as number);
+}
+
+/** Rows within rows of a block: 0 for a single part. */
+export function countLevels(block: CutBlock): number {
+  const depth: number[] = [];
+  let levels = 0;
+  block.code.forEach((code, i) => {
+    depth[i] = i === 0 ? 1 : (depth[block.parent[i] as number] as number) + 1;
+    if (code < 0) levels = Math.max(levels, depth[i] as number);
+  });
+  return levels;
+}
+
+/** Whether a rip-first tree keeps to rips, crosscuts and rips when a block with this root and so many levels goes into gap `at`. */
+export function keepsStages(tree: CutTree, at: number, root: number, levels: number): boolean {
+  if (levels === 0) return true;
+  if (tree.size === 0) return root === UP ? levels <= 3 : levels <= 2;
+  if (at === tree.size) return false;
+  const within = (tree.depth[at] as number) + levels;
+  return (root === directionOf(tree, at, true) ? within - 1 : within) <= 2;
+}
+
+/** Puts a block into gap `at` of a tree (see `insertLeaf`). Refresh afterwards. */
+export function insertBlock(tree: CutTree, at: number, block: CutBlock, isRipFirst: boolean): void {
   const n = tree.size;
   const blockSize = block.code.length;
   if (tree.code.length < n + blockSize + 3) growTree(tree, 2 * (n + blockSize) + 8);
   const { code, parent, needX, needY } = tree;
   if (n === 0) {
+    // A rip-first root is a row of rips, be it of one.
+    const start = isRipFirst && block.code[0] === ACROSS ? 1 : 0;
+    code[0] = UP;
+    parent[0] = -1;
     for (let i = 0; i < blockSize; i++) {
-      code[i] = block.code[i] as number;
-      parent[i] = block.parent[i] as number;
-      needX[i] = block.needX[i] as number;
-      needY[i] = block.needY[i] as number;
+      code[i + start] = block.code[i] as number;
+      parent[i + start] = (block.parent[i] as number) + start;
+      needX[i + start] = block.needX[i] as number;
+      needY[i + start] = block.needY[i] as number;
     }
-    tree.size = blockSize;
+    tree.size = blockSize + start;
     return;
   }
   const isRow = at < n && (code[at] as number) < 0;
   const isRoot = at === n;
-  let direction: number;
-  if (isRow) direction = code[at] as number;
-  else if (isRoot) direction = (code[0] as number) === UP ? ACROSS : UP;
-  else direction = (parent[at] as number) < 0 ? ACROSS : crossOf(code[parent[at] as number] as number);
+  const direction = directionOf(tree, at, isRipFirst);
   const first = (block.code[0] as number) === direction ? 1 : 0;
   const moved = blockSize - first + (isRow ? 0 : 1);
   const from = isRoot ? -1 : at;

@@ -42,6 +42,8 @@ export interface CutTree {
   free: number;
   /** Sum of the squared areas left over, in the square of the largest stock's area: high when the waste lies together. */
   leftover: number;
+  /** The largest single area left over, in the largest stock's area. */
+  largest: number;
 }
 
 /** An empty tree with room for `capacity` nodes. */
@@ -65,6 +67,7 @@ export function createTree(capacity: number): CutTree {
     gaps: 0,
     free: 0,
     leftover: 0,
+    largest: 0,
   };
 }
 
@@ -92,6 +95,7 @@ export function copyTree(from: CutTree, to: CutTree): void {
   to.gaps = from.gaps;
   to.free = from.free;
   to.leftover = from.leftover;
+  to.largest = from.largest;
   for (let i = 0; i < n; i++) {
     to.code[i] = from.code[i] as number;
     to.parent[i] = from.parent[i] as number;
@@ -118,7 +122,8 @@ export function refreshTree(tree: CutTree, isRipFirst: boolean, scale: number): 
     gapX[0] = tree.width;
     gapY[0] = tree.height;
     tree.free = tree.width * tree.height;
-    tree.leftover = (tree.free * scale) ** 2;
+    tree.largest = tree.free * scale;
+    tree.leftover = tree.largest ** 2;
     return;
   }
   for (let i = 0; i < n; i++) {
@@ -143,6 +148,9 @@ export function refreshTree(tree: CutTree, isRipFirst: boolean, scale: number): 
   depth[0] = 0;
   let used = 0;
   let leftover = 0;
+  // Before anything else, a strip may be cut off along the whole sheet.
+  let largest = tree.width * (tree.height - (needY[0] as number)) * scale;
+  if (!isRipFirst) largest = Math.max(largest, (tree.width - (needX[0] as number)) * tree.height * scale);
   // And one pass from the front hands down how far each may grow.
   for (let i = 0; i < n; i++) {
     let along = UP;
@@ -175,6 +183,7 @@ export function refreshTree(tree: CutTree, isRipFirst: boolean, scale: number): 
       left = ((allotY[i] as number) - (needY[i] as number)) * (allotX[i] as number) * scale;
     }
     leftover += left * left;
+    if (left > largest) largest = left;
     // A leaf at depth 3 is stacked within a crosscut piece: pairing it would take a fourth stage.
     if (isRipFirst && (code[i] as number) >= 0 && (depth[i] as number) > 2) gapX[i] = 0;
   }
@@ -190,6 +199,7 @@ export function refreshTree(tree: CutTree, isRipFirst: boolean, scale: number): 
   }
   tree.free = tree.width * tree.height - used;
   tree.leftover = leftover;
+  tree.largest = largest;
 }
 
 /** Puts a leaf of the given size into gap `at`. Only structure and leaves' sizes are kept up: refresh afterwards. */

@@ -2,25 +2,39 @@ import { boundSheets } from './sheet-bound.ts';
 import { buildSheetModel } from './sheet-model.ts';
 import { type FoundSheets, searchSheets } from './sheet-search.ts';
 import { traceTree } from './trace-tree.ts';
-import type { LaidPiece, LayOutOptions, Layout, SheetPart, SheetProblem, Unplaced } from './types.ts';
+import type { Cut, LaidPiece, LayOutOptions, Layout, SheetPart, SheetProblem, Unplaced } from './types.ts';
 
 const DEFAULT_STEPS = 20_000;
 
-/** Area of the largest offcut, and the number of cuts and of fence settings, by which layouts of one cost are told apart. */
-function judge(pieces: readonly LaidPiece[]): { largest: number; cuts: number } {
+/** What tells layouts of one cost apart: the largest offcut's area, how often the fence is set, how many cuts there are. */
+function judge(pieces: readonly LaidPiece[]): { largest: number; settings: number; cuts: number } {
   let largest = 0;
+  let settings = 0;
   let cuts = 0;
   for (const piece of pieces) {
     cuts += piece.cuts.length;
+    let before: Cut | undefined;
+    for (const cut of piece.cuts) {
+      if (cut.direction !== before?.direction || cut.fence !== before.fence) settings++;
+      before = cut;
+    }
     const first = piece.offcuts[0];
     if (first) largest = Math.max(largest, first.length * first.width);
   }
-  return { largest, cuts };
+  return { largest, settings, cuts };
+}
+
+function isBetter(now: readonly LaidPiece[], before: readonly LaidPiece[]): boolean {
+  const a = judge(now);
+  const b = judge(before);
+  return (
+    a.largest - b.largest > 0 || (a.largest === b.largest && (a.settings - b.settings || a.cuts - b.cuts) < 0)
+  );
 }
 
 /**
  * Lays parts out on sheets or boards by cuts that go right through. In order: as many parts as can be, the least cost of new
- * stock, the largest rectangle left over, the fewest cuts. Anytime and deterministic, see LayOutOptions.
+ * stock, the largest rectangle left over, the fewest fence settings and cuts. Anytime and deterministic, see LayOutOptions.
  * @throws Error when a size, kerf, trim, quantity or cost is not a whole number in its range.
  */
 export function layOutSheets(problem: SheetProblem, options: LayOutOptions = {}): Layout {
@@ -68,10 +82,7 @@ export function layOutSheets(problem: SheetProblem, options: LayOutOptions = {})
     onFound: (found) => report(toLayout(found)),
     onGathered: (found) => {
       const layout = toLayout(found);
-      const now = judge(layout.pieces);
-      const before = judge(best?.pieces ?? []);
-      if (now.largest > before.largest || (now.largest === before.largest && now.cuts < before.cuts))
-        report(layout);
+      if (isBetter(layout.pieces, best?.pieces ?? [])) report(layout);
     },
   });
   if (!best) throw new Error('The search ended without a first answer.');

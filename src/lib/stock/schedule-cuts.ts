@@ -23,18 +23,18 @@ interface Waiting {
 /**
  * Puts the cuts of one piece of stock in the order in which a person makes them: trimming first, then all cuts of the first
  * stage before any of the second, and within a stage the same fence setting as long as any piece wants it.
- * `whole` is the usable area; `trim` what is taken off around it.
+ * `whole` is the usable area; `trim` what is taken off around it. Cuts beyond `mostStages` only trim parts to size.
  */
 export function scheduleCuts(
   whole: BenchPiece,
   trim: Trim,
-  isBar: boolean,
+  mostStages: number,
 ): Pick<LaidPiece, 'placements' | 'cuts' | 'offcuts'> {
   const cuts: Cut[] = [];
   const placements: Placement[] = [];
   const offcuts: Offcut[] = [];
   let name = 'whole';
-  const edges = isBar ? (['left'] as const) : (['bottom', 'top', 'left', 'right'] as const);
+  const edges = ['bottom', 'top', 'left', 'right'] as const;
   for (const edge of edges) {
     if (trim[edge] === 0) continue;
     const number = cuts.length + 1;
@@ -93,7 +93,9 @@ export function scheduleCuts(
       const hasRest = !isLast || split.rest !== null;
       const number = cuts.length + 1;
       const yields: Cut['yields'] = [`${number}a`, hasRest ? `${number}b` : null];
-      cuts.push({ number, piece: waiting.name, direction, fence, stage: waiting.stage, yields });
+      const isTrimming = waiting.stage > mostStages;
+      const ofStage = isTrimming ? { stage: mostStages, trims: true as const } : { stage: waiting.stage };
+      cuts.push({ number, piece: waiting.name, direction, fence, ...ofStage, yields });
       arrive(near, yields[0], waiting.stage);
       // The last child may be the rest itself; then one cut parts the two.
       if (isLast) {

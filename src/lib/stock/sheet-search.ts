@@ -28,6 +28,10 @@ const SCATTER = 0.005;
 /** Every so many steps the parts then without a place gain so much weight, until the search finds room for the awkward ones. */
 const LEARN_EVERY = 16;
 const LEARN = 0.01;
+/** Weight of all squared leftovers against the largest one, when leftovers are gathered. */
+const TOGETHER = 0.6;
+/** And of a row of pieces, since it takes a fence setting of its own. */
+const ROW = 2e-5;
 /** Steps between two looks at the caller's clock. */
 const STEPS_PER_LOOK = 16;
 /** Of every ten slices of search one goes into gathering the leftovers of the best layout. */
@@ -102,7 +106,7 @@ export function searchSheets(model: SheetModel, options: SheetSearchOptions): vo
         }
         if (node === 0) node = tree.size - 1;
         const isRow = ((state.trees[b] as CutTree).code[node] as number) < 0;
-        state.remove(b, node, isRow && !model.isRipFirst && random() < HELD_ROW);
+        state.remove(b, node, isRow && random() < HELD_ROW);
       }
     }
   }
@@ -115,7 +119,7 @@ export function searchSheets(model: SheetModel, options: SheetSearchOptions): vo
         state.clear(Math.floor(random() * state.trees.length));
       }
     }
-    if (!model.isRipFirst && random() < JOINED) state.joinOut();
+    if (random() < JOINED) state.joinOut();
     state.isCloseFit = random() < CLOSE_FIT;
     orders.sort(state.out, orders.draw());
     state.recreate(BLINK);
@@ -244,11 +248,21 @@ export function searchSheets(model: SheetModel, options: SheetSearchOptions): vo
   let gatheredFrom: CutTree[] | null = null;
   let gathered = 0;
   let gatheredAt = 0;
+  /** The largest piece left over, something for leftovers that lie together elsewhere, and a little less for every row. */
+  function measureGathered(): number {
+    let largest = 0;
+    let nodes = 0;
+    for (const tree of tidy.trees) {
+      nodes += tree.size;
+      if (tree.size > 0 && tree.largest > largest) largest = tree.largest;
+    }
+    return largest + TOGETHER * leftoverOf(tidy) - ROW * nodes;
+  }
   function gather(until: number): void {
     if (gatheredFrom !== bestTrees) {
       tidy.load(bestTrees);
       tidy.limit = bestCost;
-      gathered = leftoverOf(tidy);
+      gathered = measureGathered();
       gathering.start(-gathered);
       gatheredFrom = bestTrees;
       gatheredAt = steps;
@@ -256,7 +270,7 @@ export function searchSheets(model: SheetModel, options: SheetSearchOptions): vo
     while (steps < until && mayGoOn()) {
       steps++;
       change(tidy);
-      const value = tidy.out.length === 0 ? leftoverOf(tidy) : -Infinity;
+      const value = tidy.out.length === 0 ? measureGathered() : -Infinity;
       if (value === -Infinity || !gathering.accepts(-value)) {
         tidy.undo();
         continue;

@@ -1,4 +1,13 @@
-import { type CutBlock, copyBlock, createBlock, insertBlock, turnBlock } from './cut-block.ts';
+import {
+  type CutBlock,
+  copyBlock,
+  countLevels,
+  createBlock,
+  crossOf,
+  insertBlock,
+  keepsStages,
+  turnBlock,
+} from './cut-block.ts';
 import { GONE, type CutTree, copyTree, createTree, insertLeaf, pruneTree, refreshTree } from './cut-tree.ts';
 import { joinAlike } from './join-parts.ts';
 import { rateGap } from './rate-gap.ts';
@@ -62,6 +71,9 @@ export function createSheetState(model: SheetModel, random: () => number): Sheet
   let bestGap = 0;
   let bestTurn = 0;
   let bestLoss = 0;
+  // The root and the levels of the block sought a place for, in rip-first mode.
+  let soughtRoot = 0;
+  let soughtLevels = 0;
 
   let held: CutBlock[] = [];
   const mayTurn = (leaf: number) => problem.parts[kindOf[leaf >> 1] as number]?.turn === true;
@@ -152,6 +164,11 @@ export function createSheetState(model: SheetModel, random: () => number): Sheet
         const y = turned ? length : width;
         for (let i = 0; i < gaps; i++) {
           if ((gapX[i] as number) < x || (gapY[i] as number) < y) continue;
+          if (
+            soughtLevels > 0 &&
+            !keepsStages(tree, i, turned ? crossOf(soughtRoot) : soughtRoot, soughtLevels)
+          )
+            continue;
           if (blink > 0 && random() < blink) continue;
           const loss = rateGap(tree, i, x, y, isRipFirst, scale, isCloseFit);
           if (loss < bestLoss) {
@@ -210,13 +227,18 @@ export function createSheetState(model: SheetModel, random: () => number): Sheet
   function placeHeld(blink: number): void {
     held.sort((a, b) => b.x * b.y - a.x * a.y);
     for (const block of held) {
+      if (isRipFirst) {
+        soughtRoot = block.code[0] as number;
+        soughtLevels = countLevels(block);
+      }
       // A block may hold some waste, so a tree with somewhat less free area is looked at too.
       if (search(block.x, block.y, block.canTurn ? 1 : 0, 0.9 * block.x * block.y, blink, 0)) {
         const tree = touch(bestTree);
-        insertBlock(tree, bestGap, bestTurn ? turnBlock(block) : block);
+        insertBlock(tree, bestGap, bestTurn ? turnBlock(block) : block, isRipFirst);
         refreshTree(tree, isRipFirst, scale);
       } else breakUp(block.code);
     }
+    soughtLevels = 0;
     held = [];
   }
 

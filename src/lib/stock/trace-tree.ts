@@ -93,7 +93,7 @@ export function traceTree(model: SheetModel, tree: CutTree): LaidPiece {
     stock: stock.id,
     length: stock.length,
     width: stock.width,
-    ...scheduleCuts(whole, trim, false),
+    ...scheduleCuts(whole, trim, model.isRipFirst ? 3 : Infinity),
     yield: partArea / (stock.length * stock.width),
   };
 }

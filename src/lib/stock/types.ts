@@ -106,6 +106,8 @@ export interface Cut {
   stage: number;
   /** Set on a cut that only takes a band off this edge, the blade's kerf within it. */
   edge?: keyof Trim;
+  /** Set on a cut that only trims one part to size where no further stage is allowed: it counts with the stage before it. */
+  trims?: true;
   /** Name of the piece at the fence, and of the rest beyond the kerf (null when nothing is left of it). */
   yields: [string, string | null];
 }

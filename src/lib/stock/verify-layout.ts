@@ -119,6 +119,7 @@ function replayCuts(
   const stageOf = new Map<string, { stage: number; direction: Cut['direction'] | null }>([
     ['whole', { stage: 0, direction: null }],
   ]);
+  const partPieces = new Set(laid.placements.map((p) => p.piece));
   let number = 0;
   for (const cut of laid.cuts) {
     number += 1;
@@ -139,7 +140,10 @@ function replayCuts(
     }
     const before = stageOf.get(cut.piece);
     const changed = before?.direction !== cut.direction;
-    const stage = cut.edge ? 0 : (before?.stage ?? 0) + (changed ? 1 : 0);
+    const stage = cut.edge ? 0 : (before?.stage ?? 0) + (changed && !cut.trims ? 1 : 0);
+    if (cut.trims && !partPieces.has(cut.yields[0])) {
+      return { rule: 'cut-order', message: `Cut ${cut.number} trims no part to size.` };
+    }
     if (cut.stage !== stage)
       return { rule: 'cut-order', message: `Cut ${cut.number} is of stage ${stage}, not ${cut.stage}.` };
     if (cut.edge && (cut.edge === 'left' || cut.edge === 'right') !== (cut.direction === 'crosscut')) {

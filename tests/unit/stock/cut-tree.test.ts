@@ -134,7 +134,7 @@ describe('a block', () => {
         for (const block of [row, turnBlock(row)]) {
           const filled = emptyTree(200, 200);
           copyTree(tree, filled);
-          insertBlock(filled, gap, block);
+          insertBlock(filled, gap, block, RIP_FIRST);
           refreshTree(filled, RIP_FIRST, 1);
           expectSound(filled);
           expect(leavesOf(filled)).toHaveLength(leaves + 3);
@@ -142,7 +142,7 @@ describe('a block', () => {
       }
     }
     const alone = emptyTree();
-    insertBlock(alone, 0, row);
+    insertBlock(alone, 0, row, RIP_FIRST);
     refreshTree(alone, RIP_FIRST, 1);
     expect(copyBlock(alone, 0, () => true)).toEqual(row);
   });

@@ -223,7 +223,9 @@ describe('rip-first mode', () => {
     expect(verifyLayout(problem, layout)).toEqual([]);
     for (const piece of layout.pieces) {
       expect(piece.cuts[0]?.direction).toBe('rip');
-      expect(Math.max(...piece.cuts.map((cut) => cut.stage))).toBeLessThanOrEqual(4);
+      expect(Math.max(...piece.cuts.map((cut) => cut.stage))).toBeLessThanOrEqual(3);
+      const partPieces = new Set(piece.placements.map((p) => p.piece));
+      for (const cut of piece.cuts) if (cut.trims) expect(partPieces).toContain(cut.yields[0]);
     }
   });
 });

@@ -82,6 +82,7 @@ const planted: [string, FaultRule, StockProblem, Layout][] = [
   ['a trim cut in the wrong direction', 'cut-impossible', problem, withCut(3, { edge: 'top' })],
   ['cuts out of order', 'cut-order', problem, withPiece({ cuts: [...cuts].reverse() })],
   ['a cut of the wrong stage', 'cut-order', problem, withCut(8, { stage: 2 })],
+  ['a stage hidden as trimming', 'cut-order', problem, withCut(8, { trims: true, stage: 0 })],
   ['cuts that yield another size', 'cut-result-differs', problem, withCut(6, { fence: 41 })],
   ['two parts from one piece', 'cut-result-differs', problem, withPlacement(1, { piece: '6a' })],
   [
