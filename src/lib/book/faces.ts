@@ -54,10 +54,22 @@ function charactersOf(file: Uint8Array): ReadonlySet<number> {
   return has;
 }
 
+/** Six capitals before a subset's name (ISO 32000-1, 9.6.4): counted, not random, so that a book is the same each time. */
+const tagOf = (index: number) => `BENCH${String.fromCharCode(65 + index)}`;
+
+const TYPEFACES: Readonly<Record<FaceName, string>> = {
+  regular: 'Literata-Regular',
+  italic: 'Literata-Italic',
+  semibold: 'Literata-SemiBold',
+  mono: 'B612Mono-Regular',
+  monoBold: 'B612Mono-Bold',
+};
+
 async function embedMembers(
   pdf: PDFDocument,
   files: readonly Uint8Array[],
   wanted: ReadonlySet<number>,
+  name: string,
 ): Promise<Member[]> {
   const members: Member[] = [];
   const missing = new Set(wanted);
@@ -65,7 +77,8 @@ async function embedMembers(
     if (members.length > 0 && missing.size === 0) break;
     const has = charactersOf(file);
     if (members.length > 0 && ![...missing].some((code) => has.has(code))) continue;
-    members.push({ font: await pdf.embedFont(file, { subset: true }), has });
+    const customName = `${tagOf(members.length)}+${name}`;
+    members.push({ font: await pdf.embedFont(file, { subset: true, customName }), has });
     for (const code of has) missing.delete(code);
   }
   return members;
@@ -90,7 +103,7 @@ export async function loadFaces(
     for (const each of char + char.normalize('NFKD')) wanted.add(each.codePointAt(0) ?? 0);
   }
   const members = new Map<FaceName, Member[]>();
-  for (const name of names) members.set(name, await embedMembers(pdf, fonts[name], wanted));
+  for (const name of names) members.set(name, await embedMembers(pdf, fonts[name], wanted, TYPEFACES[name]));
 
   const membersOf = (face: FaceName): Member[] => {
     const found = members.get(face);

@@ -27,7 +27,7 @@ interface Atom {
 }
 
 /** Numerator and denominator are set at this share of the size. */
-const FRACTION = 0.62;
+const FRACTION = 0.68;
 /** Heights over the baseline, as shares of the size: the bar, and the room between it and the figures. */
 const BAR = 0.33;
 const GAP = 0.1;

@@ -8,7 +8,7 @@ import { PENCIL } from './sheet.ts';
 import { setTable, TICK, type Cell, type Column } from './table.ts';
 import { describeWorkings } from './shape-words.ts';
 
-const FIGURE = 9.5;
+const FIGURE = 10.5;
 const GRAIN = { length: 'along', width: 'across', none: 'any way' } as const;
 
 function lengthCell(length: FormattedLength | undefined, align: number): Cell {
@@ -48,7 +48,7 @@ export function setPartsTable(flow: Flow, number: string, resolved: ResolvedPlan
     { units },
   );
   const labels = new Map(resolved.materials.map((material) => [material.name, material.label]));
-  const text = (content: string) => [words(content, { size: FIGURE })];
+  const text = (content: string) => [words(content, { size: 9.5 })];
   setTable(
     flow,
     columns,
