@@ -29,7 +29,7 @@ export function ProseView(props: ProseViewProps) {
   return (
     <>
       {props.prose.map((node, index) => (
-        <Node key={index} node={node} {...props} />
+        <Node key={index} {...props} node={node} />
       ))}
     </>
   );
