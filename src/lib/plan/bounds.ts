@@ -137,7 +137,7 @@ function callForm(name: string, args: Form[], size: number): Form {
 }
 
 /** Bounds of an expression over a box. Sound: no value that it can take there lies outside. */
-export function formOf(expression: Expression, values: Values): Form {
+function formOf(expression: Expression, values: Values): Form {
   const { size, program } = values;
   const named = (key: string): Form => values.forms[program.slotOf.get(key) ?? -1] ?? unbounded(size);
   switch (expression.op) {

@@ -56,7 +56,7 @@ export function clampToSize(size: SizeDeclaration, value: number): number {
 }
 
 /** True for a whole number of steps from the least value. */
-export function isOnStep(size: SizeDeclaration, value: number): boolean {
+function isOnStep(size: SizeDeclaration, value: number): boolean {
   const steps = (value - size.min) / size.step;
   return Math.abs(steps - Math.round(steps)) <= RELATIVE_SLACK * Math.max(1, Math.abs(steps));
 }

@@ -4,6 +4,7 @@ import { keptValues, namesRead } from './dependencies.ts';
 import { readFrontMatter } from './front-matter.ts';
 import { sortGraph } from './graph.ts';
 import { parseText } from './parse.ts';
+import { MAX_TEXT_LENGTH } from './precheck.ts';
 import { createProblemList, sortProblems } from './problems.ts';
 import { compileProse } from './prose.ts';
 import { indexSource, placeAt } from './source.ts';
@@ -24,7 +25,7 @@ export interface Compilation {
  */
 export function compilePlan(text: string): Compilation {
   const problems = createProblemList();
-  const source = indexSource(text.length > 400_001 ? text.slice(0, 400_001) : text);
+  const source = indexSource(text.slice(0, MAX_TEXT_LENGTH + 1));
   const parsed = parseText(source, problems);
   if (parsed === null) return { plan: null, problems: sortProblems(problems.items) };
 

@@ -18,7 +18,7 @@ import type {
 export type Run = (slots: Float64Array) => number;
 
 /** A size or choice and the slot that it is set in. */
-export interface Input {
+interface Input {
   declaration: SizeDeclaration | ChoiceDeclaration;
   slot: number;
 }
@@ -230,7 +230,7 @@ function compileCall(expression: Expression & { op: 'call' }, program: Program):
 }
 
 /** Compiles a checked expression of one value to a closure. No text is ever turned into code. */
-export function compileRun(expression: Expression, program: Program): Run {
+function compileRun(expression: Expression, program: Program): Run {
   switch (expression.op) {
     case 'value': {
       const { value } = expression;

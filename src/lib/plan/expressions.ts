@@ -10,8 +10,8 @@ import { childrenOf, isFactorSign } from './syntax-tree.ts';
 import type { Expression, Formula, Place } from './types.ts';
 
 /** Limits of one expression. */
-export const MAX_EXPRESSION_NODES = 4000;
-export const MAX_EXPRESSION_DEPTH = 64;
+const MAX_EXPRESSION_NODES = 4000;
+const MAX_EXPRESSION_DEPTH = 64;
 
 /** Constructs of JavaScript that the plan language has no use for: what to call them, and what to do instead. */
 const REFUSED: ReadonlyMap<string, readonly [what: string, hint: string]> = new Map<

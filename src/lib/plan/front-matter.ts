@@ -9,7 +9,7 @@ const text = (most: number): z.ZodString => z.string().trim().min(1).max(most);
 const words = z.array(text(60)).max(30).default([]);
 
 /** The front matter of a plan. */
-export const frontMatterSchema = z.strictObject({
+const frontMatterSchema = z.strictObject({
   title: text(120),
   summary: text(200),
   skill: z.union([z.literal(1), z.literal(2), z.literal(3), z.literal(4), z.literal(5)]),

@@ -10,7 +10,7 @@ import type { Source } from './source.ts';
  * work is linear in the text and their stack shallow, whatever was typed.
  */
 export const MAX_TEXT_LENGTH = 400_000;
-export const MAX_EXPRESSION_LENGTH = 8000;
+const MAX_EXPRESSION_LENGTH = 8000;
 const MAX_BRACKETS = 64;
 const MAX_EXPRESSIONS = 10_000;
 

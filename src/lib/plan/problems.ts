@@ -1,7 +1,7 @@
 import type { Place, Problem, Severity } from './types.ts';
 
 /** The most problems that one reading reports; a text that is wrong everywhere is not made clearer by more. */
-export const MAX_PROBLEMS = 100;
+const MAX_PROBLEMS = 100;
 
 /** What a rule says when it is broken; see {@link Problem} for the fields. */
 export interface Finding {

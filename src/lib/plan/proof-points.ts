@@ -5,7 +5,7 @@ import type { ChoiceDeclaration, CompiledPlan, Fit, MaterialDeclaration, SizeDec
 import { programOf } from './evaluate.ts';
 
 /** How far a sheet may really be from its nominal thickness: the proof tries measured ones this much thinner and thicker. */
-export const MEASURED_SPREAD = 0.06;
+const MEASURED_SPREAD = 0.06;
 
 /** One thing that may be set: a size, or the real thickness of a measured material. */
 export interface Dimension {

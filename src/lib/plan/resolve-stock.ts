@@ -162,7 +162,7 @@ export function resolveHardware(resolving: Resolving): ResolvedHardware[] {
 }
 
 /** The whole surface of all pieces in m²: both faces and all four edges, shapes not looked at. */
-export function surfaceM2(parts: readonly ResolvedPart[]): number {
+function surfaceM2(parts: readonly ResolvedPart[]): number {
   return parts.reduce((sum, { qty, length, width, thickness }) => {
     const [l, w, t] = [length, width, thickness].map((size) => Math.max(0, size) / NM_PER_M);
     return sum + qty * 2 * ((l ?? 0) * (w ?? 0) + (l ?? 0) * (t ?? 0) + (w ?? 0) * (t ?? 0));
@@ -173,7 +173,7 @@ export function surfaceM2(parts: readonly ResolvedPart[]): number {
  * Glue lines of all pieces in metres and their area in m². A line runs along every groove and rabbet, and across both ends of
  * every piece, because a joint is nearly always at an end or in a groove. It is an estimate for buying glue.
  */
-export function glueLines(parts: readonly ResolvedPart[]): { metres: number; areaM2: number } {
+function glueLines(parts: readonly ResolvedPart[]): { metres: number; areaM2: number } {
   let metres = 0;
   let areaM2 = 0;
   for (const part of parts) {

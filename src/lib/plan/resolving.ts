@@ -72,7 +72,7 @@ function rootsOf(expression: Expression, resolving: Resolving): { name: string; 
 }
 
 /** `with width 600 mm, bays 5`: the sizes that led to a value, or empty where it depends on none. */
-export function describeRoots(formula: Formula, resolving: Resolving): string {
+function describeRoots(formula: Formula, resolving: Resolving): string {
   const { program, slots, units } = resolving;
   const told = rootsOf(formula.expression, resolving).map(({ name, kind, slot }) => {
     const number = slots[slot] ?? 0;

@@ -152,11 +152,7 @@ export function declareNames(elements: readonly Element[], context: ReadContext)
 }
 
 /** Says which values need each other, as the path that closes. */
-export function reportCycle(
-  cycle: readonly string[],
-  element: Element | undefined,
-  context: ReadContext,
-): void {
+function reportCycle(cycle: readonly string[], element: Element | undefined, context: ReadContext): void {
   const attribute = element && (attributeOf(element, 'value') ?? element.attributes[0]);
   const start = attribute?.position?.start.offset ?? element?.position?.start.offset ?? 0;
   const end = attribute?.position?.end.offset ?? start + 1;

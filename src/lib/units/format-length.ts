@@ -1,4 +1,4 @@
-import { NM_PER_FOOT, NM_PER_INCH, NM_PER_MM, roundNm } from './length.ts';
+import { NM_PER_INCH, NM_PER_MM, roundNm } from './length.ts';
 import type { UnitSystem } from './length.ts';
 
 /** Graduations of an inch rule. */
@@ -164,9 +164,4 @@ export function formatExactLength(nm: number, units: UnitSystem): string {
   if (shown.remainderNm === 0) return shown.text.replace(MINUS, '-');
   // Nine decimals of an inch are 0.0254 nm, so the nearest nanometre is unmistakable.
   return `${trimZeros((exact / NM_PER_INCH).toFixed(9))}"`;
-}
-
-/** True when the length is at least one foot: where feet and inches begin to help. */
-export function isFootOrMore(nm: number): boolean {
-  return Math.abs(nm) >= NM_PER_FOOT;
 }
