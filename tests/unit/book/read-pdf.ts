@@ -7,12 +7,12 @@ import sharp from 'sharp';
 
 const run = promisify(execFile);
 
-async function withFile<T>(pdf: Uint8Array, use: (file: string, folder: string) => Promise<T>): Promise<T> {
+async function withFile<T>(pdf: Uint8Array, read: (file: string, folder: string) => Promise<T>): Promise<T> {
   const folder = await mkdtemp(join(tmpdir(), 'book-'));
   try {
     const file = join(folder, 'book.pdf');
     await writeFile(file, pdf);
-    return await use(file, folder);
+    return await read(file, folder);
   } finally {
     await rm(folder, { recursive: true });
   }
