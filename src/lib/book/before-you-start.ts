@@ -21,8 +21,8 @@ export function setCautions(flow: Flow, input: BookInput): void {
   for (const caution of input.resolved.cautions) {
     const key = `${caution.about}\n${caution.text}`;
     if (seen.has(key)) continue;
-    seen.add(key);
-    setCaution(flow, caution);
+    setCaution(flow, caution, seen.has(caution.about));
+    seen.add(key).add(caution.about);
   }
   setParagraph(flow, [
     words(

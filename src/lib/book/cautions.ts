@@ -63,11 +63,16 @@ const USUAL: ReadonlyMap<string, { title: string; text: string }> = new Map([
   ],
 ]);
 
-/** Sets one caution beside a red rule: its subject, the usual words of the house, and the author's own. Kept together. */
-export function setCaution(flow: Flow, caution: { about: string; text: string }): void {
+/**
+ * Sets one caution beside a red rule: its subject, the author's own words, and the usual ones of the house unless these were
+ * said before. Kept together.
+ */
+export function setCaution(flow: Flow, caution: { about: string; text: string }, isRepeated = false): void {
   const usual = USUAL.get(caution.about);
   const title = usual?.title ?? caution.about.charAt(0).toUpperCase() + caution.about.slice(1);
-  const body = [caution.text, usual?.text ?? ''].filter((text) => text !== '').join(' ');
+  const body = [caution.text, isRepeated && caution.text !== '' ? '' : (usual?.text ?? '')]
+    .filter((text) => text !== '')
+    .join(' ');
   const inlines = [words(`${cleanText(title)}. `, { face: 'semibold', color: RED }), words(cleanText(body))];
   const x = flow.sheet.text + 12;
   const lines = breakLines(inlines, flow.sheet.right - x, flow.faces.measure);

@@ -112,7 +112,8 @@ function setBlock(flow: Flow, node: ResolvedProseNode, units: UnitSystem): void 
       setFigure(flow, node.src, node.alt);
       return;
     case 'caution':
-      setCaution(flow, node);
+      // The section on cautions, which stands before every step, has said the usual words.
+      setCaution(flow, node, true);
       return;
     case 'rule':
       needRoom(flow, 20);

@@ -59,6 +59,12 @@ export function setShoppingList(flow: Flow, number: string, resolved: ResolvedPl
     { heading: 'About', width: wide * 0.14, align: 'right' },
   ];
   setSection(flow, number, 'Shopping list', 110);
+  for (const cost of resolved.costs)
+    setParagraph(flow, [
+      words('Altogether about ', { face: 'semibold' }),
+      numerals(formatMoney(cost.minor, cost.currency), 9.6),
+      words(' at the prices written in the plan; your dealer’s will differ.'),
+    ]);
   if (resolved.materials.length > 0) {
     setSubheading(flow, 'Stock', 50);
     setTable(
@@ -133,11 +139,4 @@ export function setShoppingList(flow: Flow, number: string, resolved: ResolvedPl
       ]),
     );
   }
-  skip(flow, 6);
-  for (const cost of resolved.costs)
-    setParagraph(flow, [
-      words('Altogether about ', { face: 'semibold' }),
-      numerals(formatMoney(cost.minor, cost.currency), 9.6),
-      words(' at the prices written in the plan; your dealer’s will differ.'),
-    ]);
 }
