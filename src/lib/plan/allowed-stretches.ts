@@ -1,5 +1,6 @@
 import { roundNm } from '#lib/units/length.ts';
 
+import { runSteps } from './evaluate.ts';
 import { plainText, resolveProse } from './resolve-prose.ts';
 import type { CompiledPlan, Fit, SizeDeclaration } from './types.ts';
 import { findBrokenRequirement, workOut } from './work-out.ts';
@@ -34,16 +35,23 @@ export function allowedStretches(plan: CompiledPlan, fit: Fit, sizeName: string)
   );
   if (!size || !plan.declarations.some((declaration) => declaration.type === 'require')) return [];
 
+  // One slot is moved and the rest worked out behind it, hundreds of times: what is the same for all is done once.
+  const resolving = workOut(plan, fit);
+  const { program, slots, thicknesses } = resolving;
+  const slot = program.slotOf.get(size.name) ?? 0;
+  const moveTo = (value: number): void => {
+    slots[slot] = value;
+    runSteps(program, slots, thicknesses);
+  };
   const at = (value: number): Verdict => {
-    const broken = findBrokenRequirement(
-      workOut(plan, { ...fit, values: { ...fit.values, [size.name]: value } }),
-    );
+    moveTo(value);
+    const broken = findBrokenRequirement(resolving);
     return { broken: broken ? plan.declarations.indexOf(broken) : -1 };
   };
   const reasonAt = (index: number, value: number): string => {
     const declaration = plan.declarations[index];
     if (declaration?.type !== 'require') return '';
-    const resolving = workOut(plan, { ...fit, values: { ...fit.values, [size.name]: value } });
+    moveTo(value);
     return plainText(resolveProse(declaration.message, resolving, new Map()));
   };
   const samples = sampleRange(size);

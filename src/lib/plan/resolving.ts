@@ -19,6 +19,8 @@ export interface Resolving {
   prices: ReadonlyMap<string, number>;
   /** Names of materials whose thickness the buyer measured. */
   measured: ReadonlySet<string>;
+  /** Their thicknesses in nanometres by slot. */
+  thicknesses: ReadonlyMap<number, number>;
 }
 
 /** Numbers beyond this are no quantities of a piece of furniture. */

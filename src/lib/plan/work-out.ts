@@ -68,6 +68,7 @@ export function workOut(plan: CompiledPlan, fit: Fit): Resolving {
     problems,
     prices,
     measured: measuredNames,
+    thicknesses: measured,
   };
   reportFaults(program, resolving);
   return resolving;
