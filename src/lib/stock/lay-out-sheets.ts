@@ -39,9 +39,18 @@ function isBetter(now: readonly LaidPiece[], before: readonly LaidPiece[]): bool
  */
 export function layOutSheets(problem: SheetProblem, options: LayOutOptions = {}): Layout {
   const model = buildSheetModel(problem);
-  const bound = boundSheets(model);
-  const lowerBound = Number.isFinite(bound) ? bound : 0;
+  let lowerBound = 0;
   let best: Layout | null = null;
+
+  /** Works the bound out, and tells of it where it settles the first answer. */
+  function proveBound(): number {
+    const bound = boundSheets(model);
+    lowerBound = Number.isFinite(bound) ? bound : 0;
+    if (best && best.lowerBound !== lowerBound && best.unplaced.length === model.refused.length) {
+      report({ ...best, lowerBound, isProved: best.newCost <= lowerBound });
+    }
+    return lowerBound;
+  }
 
   function toLayout(found: FoundSheets): Layout {
     const pieces = found.trees.map((tree) => ({ stock: tree.stock, piece: traceTree(model, tree) }));
@@ -77,7 +86,7 @@ export function layOutSheets(problem: SheetProblem, options: LayOutOptions = {})
   searchSheets(model, {
     seed: options.seed ?? 1,
     steps: options.steps ?? DEFAULT_STEPS,
-    lowerBound,
+    proveBound,
     shouldStop: options.shouldStop ?? (() => false),
     onFound: (found) => report(toLayout(found)),
     onGathered: (found) => {

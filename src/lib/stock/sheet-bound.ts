@@ -59,59 +59,94 @@ function greatestCommonDivisor(a: number, b: number): number {
   return a;
 }
 
-/** Least cost of stock whose values add up to `wanted`: exact for one price, the relaxed problem rounded up for several. */
-function coverCost(wanted: number, value: number[], cost: number[], count: number[]): number {
+/** What whole prices add up to in multiples of: their greatest common divisor, or 0 where they are not whole. */
+function stepOf(cost: readonly number[]): number {
+  const paid = cost.filter((c) => c > 0);
+  return paid.every(Number.isInteger) ? paid.reduce(greatestCommonDivisor, 0) : 0;
+}
+
+/** Least cost of stock whose values add up to `wanted`, parts of a piece allowed: the best value for its price comes first. */
+function coverCost(
+  wanted: number,
+  value: Float64Array,
+  cost: readonly number[],
+  count: readonly number[],
+): number {
   let rest = wanted - TOLERANCE * Math.max(1, wanted);
-  const order = value.map((_, s) => s).filter((s) => (value[s] as number) > 0);
-  order.sort(
-    (a, b) => (cost[a] as number) / (value[a] as number) - (cost[b] as number) / (value[b] as number),
-  );
-  const paid = cost.filter((c, s) => c > 0 && (count[s] as number) > 0);
-  const step = paid.every(Number.isInteger) ? paid.reduce(greatestCommonDivisor, 0) : 0;
   let sum = 0;
-  for (const s of order) {
-    if (rest <= 0) break;
-    const number = Math.min(count[s] as number, rest / (value[s] as number));
-    sum += number * (cost[s] as number);
-    rest -= number * (value[s] as number);
+  let before = -1;
+  let taken = -1;
+  while (rest > 0) {
+    let next = -1;
+    let least = Infinity;
+    for (let s = 0; s < value.length; s++) {
+      if (!((value[s] as number) > 0)) continue;
+      const rate = (cost[s] as number) / (value[s] as number);
+      if (rate < least && (rate > before || (rate === before && s > taken))) {
+        least = rate;
+        next = s;
+      }
+    }
+    if (next < 0) return Infinity;
+    before = least;
+    taken = next;
+    const enough = rest / (value[next] as number);
+    const number = Math.min(count[next] as number, enough);
+    sum += number * (cost[next] as number);
+    rest = number === enough ? 0 : rest - number * (value[next] as number);
   }
-  if (rest > 0) return Infinity;
-  return step > 0 ? Math.ceil(sum / step - TOLERANCE) * step : sum;
+  return sum;
+}
+
+/** One transform along one direction, tabulated: parts as they lie, parts turned, and stock. */
+interface Table {
+  straight: Float64Array;
+  turned: Float64Array;
+  ofStock: Float64Array;
 }
 
 /** The bound, in the unit of the stock's cost; Infinity when the limited stock cannot hold the parts. */
 export function boundSheets(model: SheetModel): number {
-  const { partX, partY, canTurn, stockX, stockY, kindOf } = model;
+  const { partX, partY, stockX, stockY } = model;
   if (model.units === 0) return 0;
-  const quantity = new Float64Array(partX.length);
-  for (const kind of kindOf) quantity[kind] = (quantity[kind] as number) + 1;
-  const kinds = [...quantity.keys()].filter((kind) => (quantity[kind] as number) > 0);
-  const stock = [...stockX.keys()];
-  const capacityX = Math.max(...stockX);
-  const capacityY = Math.max(...stockY);
+  const wantedOf = new Float64Array(partX.length);
+  for (const kind of model.kindOf) wantedOf[kind] = (wantedOf[kind] as number) + 1;
+  const kinds = [...wantedOf.keys()].filter((kind) => (wantedOf[kind] as number) > 0);
+  const wanted = Float64Array.from(kinds, (kind) => wantedOf[kind] as number);
+  const x = Float64Array.from(kinds, (kind) => partX[kind] as number);
+  const y = Float64Array.from(kinds, (kind) => partY[kind] as number);
+  const canTurn = Uint8Array.from(kinds, (kind) => model.canTurn[kind] as number);
   const cost = [...model.cost];
   const count = [...model.count];
+  const step = stepOf(cost);
   // The parts that no piece of the buyer's own can hold must come from bought stock.
-  const onlyPaid = new Set(
-    kinds.filter((kind) => !stock.some((s) => (cost[s] as number) === 0 && fitsStock(model, kind, s))),
+  const isOnlyPaid = Uint8Array.from(kinds, (kind) =>
+    cost.some((c, s) => c === 0 && fitsStock(model, kind, s)) ? 0 : 1,
   );
+  const hasOwn = cost.some((c) => c === 0);
   const paidCount = count.map((n, s) => ((cost[s] as number) > 0 ? n : 0));
 
-  const sizesX = kinds.flatMap((kind) =>
-    (canTurn[kind] as number) ? [partX[kind] as number, partY[kind] as number] : [partX[kind] as number],
-  );
-  const sizesY = kinds.flatMap((kind) =>
-    (canTurn[kind] as number) ? [partX[kind] as number, partY[kind] as number] : [partY[kind] as number],
-  );
-  const tabulate = (f: Transform, capacity: number) => ({
-    straight: kinds.map((kind) =>
-      (partX[kind] as number) <= capacity ? f(partX[kind] as number) : Infinity,
-    ),
-    turned: kinds.map((kind) => ((partY[kind] as number) <= capacity ? f(partY[kind] as number) : Infinity)),
-    f,
-  });
-  const alongX = transformsFor(capacityX, sizesX).map((f) => tabulate(f, capacityX));
-  const alongY = transformsFor(capacityY, sizesY).map((f) => tabulate(f, capacityY));
+  const turnedOf = (sizes: Float64Array) => [...sizes].filter((_, q) => canTurn[q] === 1);
+  function tabulate(along: Float64Array, across: Float64Array, stock: Float64Array): Table[] {
+    const capacity = Math.max(...stock);
+    // A way to lie that exceeds every stock is worth infinitely much, so that the other one counts.
+    const tabulateSizes = (sizes: Float64Array, f: Transform) =>
+      sizes.map((size) => (size <= capacity ? f(size) : Infinity));
+    return transformsFor(capacity, [...along, ...turnedOf(across)]).map((f) => ({
+      straight: tabulateSizes(along, f),
+      turned: tabulateSizes(across, f),
+      ofStock: stock.map(f),
+    }));
+  }
+  const alongX = tabulate(x, y, stockX);
+  const alongY = tabulate(y, x, stockY);
+  const values = new Float64Array(stockX.length);
+
+  function valueOf(fx: Float64Array, fy: Float64Array, q: number): number {
+    const a = fx[q] as number;
+    const b = fy[q] as number;
+    return a === Infinity || b === Infinity ? Infinity : a * b;
+  }
 
   let best = 0;
   for (const fx of alongX) {
@@ -119,26 +154,17 @@ export function boundSheets(model: SheetModel): number {
       let all = 0;
       let paid = 0;
       for (let q = 0; q < kinds.length; q++) {
-        const kind = kinds[q] as number;
-        // One way is impossible where it exceeds every stock: Infinity times zero is no value.
-        const straightX = fx.straight[q] as number;
-        const straightY = fy.turned[q] as number;
-        let value = straightX === Infinity || straightY === Infinity ? Infinity : straightX * straightY;
-        if (canTurn[kind] as number) {
-          const turnedX = fx.turned[q] as number;
-          const turnedY = fy.straight[q] as number;
-          if (turnedX !== Infinity && turnedY !== Infinity) value = Math.min(value, turnedX * turnedY);
-        }
-        all += value * (quantity[kind] as number);
-        if (onlyPaid.has(kind)) paid += value * (quantity[kind] as number);
+        let value = valueOf(fx.straight, fy.straight, q);
+        if (canTurn[q]) value = Math.min(value, valueOf(fx.turned, fy.turned, q));
+        value *= wanted[q] as number;
+        all += value;
+        if (isOnlyPaid[q]) paid += value;
       }
-      const values = stock.map((s) => fx.f(stockX[s] as number) * fy.f(stockY[s] as number));
-      const bound = Math.max(
-        coverCost(all, values, cost, count),
-        onlyPaid.size > 0 ? coverCost(paid, values, cost, paidCount) : 0,
-      );
-      if (bound > best) best = bound;
+      for (let s = 0; s < values.length; s++)
+        values[s] = (fx.ofStock[s] as number) * (fy.ofStock[s] as number);
+      best = Math.max(best, coverCost(all, values, cost, count));
+      if (hasOwn && paid > 0) best = Math.max(best, coverCost(paid, values, cost, paidCount));
     }
   }
-  return best;
+  return step > 0 ? Math.ceil(best / step - TOLERANCE) * step : best;
 }

@@ -51,7 +51,8 @@ export interface FoundSheets {
 export interface SheetSearchOptions {
   seed: number;
   steps: number;
-  lowerBound: number;
+  /** Asked for once, after the first answer, since it takes as long as that. */
+  proveBound: () => number;
   shouldStop: () => boolean;
   /** Called with each layout that places more, or costs less. */
   onFound: (found: FoundSheets) => void;
@@ -166,13 +167,15 @@ export function searchSheets(model: SheetModel, options: SheetSearchOptions): vo
 
   // First answers: everything at once, in each order.
   const state = createSheetState(model, random);
+  let lowerBound = 0;
   for (let order = 0; order < SIZE_ORDERS; order++) {
-    if (order > 0 && (bestCost <= options.lowerBound || !mayGoOn())) break;
+    if (order > 0 && (bestCost <= lowerBound || !mayGoOn())) break;
     state.reset();
     orders.sort(state.out, order);
     state.recreate(0);
     offer(state);
-    if (order > 0) steps++;
+    if (order === 0) lowerBound = options.proveBound();
+    else steps++;
   }
 
   const reducing = createLateAcceptance(HISTORY);
@@ -234,7 +237,7 @@ export function searchSheets(model: SheetModel, options: SheetSearchOptions): vo
       steps++;
       change(state);
       if ((bestOut > 0 || state.out.length === 0) && offer(state)) {
-        if (bestOut === 0 && bestCost <= options.lowerBound) return;
+        if (bestOut === 0 && bestCost <= lowerBound) return;
         aimLower();
       } else if (reducing.accepts(measureReduced())) state.keep();
       else state.undo();
@@ -284,7 +287,7 @@ export function searchSheets(model: SheetModel, options: SheetSearchOptions): vo
     }
   }
 
-  const isLeast = () => bestOut === 0 && bestCost <= options.lowerBound;
+  const isLeast = () => bestOut === 0 && bestCost <= lowerBound;
   if (model.units === 0 || !mayGoOn()) return;
   if (!isLeast()) aimLower();
   for (let slice = 1; mayGoOn(); slice++) {

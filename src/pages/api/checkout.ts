@@ -27,12 +27,14 @@ function readFit(text: string): unknown {
 
 export const POST = formEndpoint({
   schema,
-  back: (context) => {
-    const slug = new URL(context.request.headers.get('referer') ?? 'http://x/').pathname.replace(
-      /^\/plans\//,
-      '',
-    );
-    return /^[a-z0-9-]+$/.test(slug) ? `${paths.plan(slug)}#buy` : paths.chest();
+  // The page's address holds the sizes as they were set, so that they are there again after signing in.
+  back: (context, typed) => {
+    const referer = context.request.headers.get('referer');
+    const from = referer && URL.canParse(referer) ? new URL(referer) : null;
+    const slug = String(typed['slug'] ?? '');
+    return from?.pathname === paths.plan(slug)
+      ? `${from.pathname}${from.search}#buy`
+      : `${paths.plan(slug)}#buy`;
   },
   run: async ({ actor, input }) => {
     requireUser(actor);
