@@ -166,5 +166,5 @@ export function boundSheets(model: SheetModel): number {
       if (hasOwn && paid > 0) best = Math.max(best, coverCost(paid, values, cost, paidCount));
     }
   }
-  return step > 0 ? Math.ceil(best / step - TOLERANCE) * step : best;
+  return step > 0 && best > 0 ? Math.ceil(best / step - TOLERANCE) * step : best;
 }
