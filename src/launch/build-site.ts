@@ -25,8 +25,9 @@ function listFiles(place: string): string[] {
     .map((entry) => path.join(entry.parentPath, entry.name));
 }
 
-function hashSources(): string {
-  const hash = createHash('sha256');
+function hashSources(siteUrl: string): string {
+  // The address is part of what is built: Astro checks the origin of forms against it.
+  const hash = createHash('sha256').update(siteUrl);
   for (const file of SOURCES.flatMap(listFiles).sort())
     hash.update(file).update('\0').update(readFileSync(file)).update('\0');
   return hash.digest('hex');
@@ -39,7 +40,7 @@ export async function buildSite(
   env: Record<string, string>,
 ): Promise<boolean> {
   const stamp = path.join(dist, '.sources');
-  const hash = hashSources();
+  const hash = hashSources(env['SITE_URL'] ?? '');
   if (existsSync(stamp) && readFileSync(stamp, 'utf8') === hash) return false;
   await supervisor.run({
     name: 'build',

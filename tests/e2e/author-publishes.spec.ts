@@ -27,7 +27,7 @@ test('an author writes a plan, mends what the range proof finds, invites a proof
 
   await page.goto('/office');
   await page.getByRole('link', { name: 'Low Fell Joinery' }).click();
-  await page.getByLabel('Title').fill(title);
+  await page.getByRole('textbox', { name: 'Title' }).fill(title);
   await page.getByRole('button', { name: 'Lay it on the board' }).click();
   await waitForIslands(page);
 
@@ -44,13 +44,11 @@ test('an author writes a plan, mends what the range proof finds, invites a proof
   await page.getByRole('button', { name: 'Save the draft' }).click();
   await expect(page.getByText('All is saved.')).toBeVisible();
 
-  await page
-    .getByLabel('Add a picture')
-    .setInputFiles({
-      name: 'rail.png',
-      mimeType: 'image/png',
-      buffer: readFileSync('content/plans/boot-bench/boot-bench.png'),
-    });
+  await page.getByLabel('Add a picture').setInputFiles({
+    name: 'rail.png',
+    mimeType: 'image/png',
+    buffer: readFileSync('content/plans/boot-bench/boot-bench.png'),
+  });
   await page.getByRole('button', { name: 'Upload', exact: true }).click();
   await expect(page.getByText('rail.png is there')).toBeVisible();
   await waitForIslands(page);

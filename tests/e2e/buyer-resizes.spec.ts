@@ -45,7 +45,7 @@ test('a buyer resizes and switches units a hundred times without drift, and the 
   const table = page.getByRole('table', { name: 'Parts table' });
   // 37 3/8 in are 949.325 mm. Clear inside: 949.325 - 2 x 17.6 = 914.125; three bays: (914.125 - 2 x 17.6) / 3 = 292.975.
   await expect(table.locator('tr[data-mark="D"]')).toContainText('914');
-  await expect(table.locator('tr[data-mark="A"]')).toContainText('17.5');
+  await expect(table.locator('tr[data-mark="A"]')).toContainText('17.6');
   const metric = await readTable(page);
   await page.getByRole('button', { name: /inches/i }).click();
   await expect(table.locator('tr[data-mark="B"]')).toContainText('37 3/8');

@@ -8,7 +8,7 @@ export default defineConfig({
   workers: 2,
   retries: 0,
   forbidOnly: true,
-  timeout: 120_000,
+  timeout: 90_000,
   expect: { timeout: 15_000 },
   reporter: [['list'], ['json']],
   use: {

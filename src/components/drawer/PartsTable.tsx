@@ -4,7 +4,7 @@ import { Length } from '#components/ui/Length.tsx';
 import { PartMark } from '#components/ui/PartMark.tsx';
 import { lengthFormat } from '#lib/plan/length-format.ts';
 import type { ResolvedMaterial, ResolvedPart, UnitSystem } from '#lib/plan/types.ts';
-import { formatLength } from '#lib/units/format-length.ts';
+import { formatAlike, REMAINDER_LEGEND } from '#lib/units/format-length.ts';
 
 interface PartsTableProps {
   parts: readonly ResolvedPart[];
@@ -16,46 +16,57 @@ interface PartsTableProps {
 export function PartsTable({ parts, materials, units }: PartsTableProps) {
   const labels = new Map(materials.map((material) => [material.name, material.label]));
   const unit = units === 'in' ? 'in' : 'mm';
-  const size = (nm: number, head: string) => (
-    <td className="is-figure" data-head={head}>
-      <Length length={formatLength(nm, lengthFormat(units))} isBare />
-    </td>
+  // Read together, as in the book, so that parts that must match are printed alike on both.
+  const shown = formatAlike(
+    parts.flatMap((part) => [part.length, part.width, part.thickness]),
+    lengthFormat(units),
   );
+  const size = (index: number, head: string) => {
+    const length = shown[index];
+    return (
+      <td className="is-figure" data-head={head}>
+        {length ? <Length length={length} isBare /> : null}
+      </td>
+    );
+  };
   return (
-    <DataTable caption="Parts table">
-      <thead>
-        <tr>
-          <th scope="col" className="is-narrow">
-            Mark
-          </th>
-          <th scope="col">Part</th>
-          <th scope="col">Material</th>
-          <th scope="col" className="is-figure">
-            Qty
-          </th>
-          {['Length', 'Width', 'Thickness'].map((head) => (
-            <th key={head} scope="col" className="is-figure">
-              {head} <span className="data-table__unit">{unit}</span>
+    <>
+      <DataTable caption="Parts table">
+        <thead>
+          <tr>
+            <th scope="col" className="is-narrow">
+              Mark
             </th>
-          ))}
-        </tr>
-      </thead>
-      <tbody>
-        {parts.map((part) => (
-          <tr key={part.mark} data-mark={part.mark}>
-            <td className="is-narrow change-bar-place">
-              <ChangeBar of={`${part.qty} ${part.length} ${part.width} ${part.thickness}`} />
-              <PartMark mark={part.mark} name={part.name} />
-            </td>
-            <td>{part.name}</td>
-            <td>{labels.get(part.material) ?? part.material}</td>
-            <td className="is-figure">{part.qty}</td>
-            {size(part.length, 'Length')}
-            {size(part.width, 'Width')}
-            {size(part.thickness, 'Thickness')}
+            <th scope="col">Part</th>
+            <th scope="col">Material</th>
+            <th scope="col" className="is-figure">
+              Qty
+            </th>
+            {['Length', 'Width', 'Thickness'].map((head) => (
+              <th key={head} scope="col" className="is-figure">
+                {head} <span className="data-table__unit">{unit}</span>
+              </th>
+            ))}
           </tr>
-        ))}
-      </tbody>
-    </DataTable>
+        </thead>
+        <tbody>
+          {parts.map((part, index) => (
+            <tr key={part.mark} data-mark={part.mark}>
+              <td className="is-narrow change-bar-place">
+                <ChangeBar of={`${part.qty} ${part.length} ${part.width} ${part.thickness}`} />
+                <PartMark mark={part.mark} name={part.name} />
+              </td>
+              <td>{part.name}</td>
+              <td>{labels.get(part.material) ?? part.material}</td>
+              <td className="is-figure">{part.qty}</td>
+              {size(index * 3, 'Length')}
+              {size(index * 3 + 1, 'Width')}
+              {size(index * 3 + 2, 'Thickness')}
+            </tr>
+          ))}
+        </tbody>
+      </DataTable>
+      {shown.some((length) => length.marked) ? <p className="small secondary">{REMAINDER_LEGEND}</p> : null}
+    </>
   );
 }
