@@ -1,7 +1,7 @@
 import { defineConfig } from 'vitest/config';
 
 /** Time zone and locale are fixed so that a test reads the same on every machine. */
-const env = { TZ: 'UTC', LANG: 'en_GB.UTF-8' };
+const env = { TZ: 'UTC', LANG: 'en_GB.UTF-8', NODE_NO_WARNINGS: '1' };
 
 export default defineConfig({
   test: {
@@ -19,7 +19,8 @@ export default defineConfig({
           environment: 'node',
           env,
           globalSetup: ['tests/service/global-setup.ts'],
-          testTimeout: 30_000,
+          setupFiles: ['tests/service/use-services.ts'],
+          testTimeout: 60_000,
           hookTimeout: 60_000,
           maxWorkers: 2,
         },
