@@ -2,6 +2,7 @@ import { randomBytes } from 'node:crypto';
 import { existsSync, mkdirSync, readFileSync, writeFileSync } from 'node:fs';
 import path from 'node:path';
 import * as z from 'zod';
+import { WEBHOOK_EVENTS } from '#server/checkout/webhook-events.ts';
 import { startPostgres, type RunningPostgres } from './postgres.ts';
 import type { Ports } from './ports.ts';
 import { createSupervisor, waitForAddress, type Supervisor } from './processes.ts';
@@ -129,6 +130,8 @@ export async function startHouse(options: HouseOptions): Promise<House> {
           `${site}/api/webhooks/payments`,
           '--webhook-secret',
           secrets.webhook,
+          '--webhook-events',
+          WEBHOOK_EVENTS.join(','),
         ],
         env,
         isQuiet: true,

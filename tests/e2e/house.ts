@@ -4,7 +4,7 @@ import { expect, test as base, type Page } from 'playwright/test';
 import * as z from 'zod';
 
 /** Every test of the house: an error in the browser's console that nobody expects fails it. */
-export const test = base.extend<{ quiet: void }>({
+export const test = base.extend<{ quiet: null }>({
   quiet: [
     async ({ page }, use) => {
       const said: string[] = [];
@@ -14,7 +14,7 @@ export const test = base.extend<{ quiet: void }>({
           said.push(message.text());
       });
       page.on('pageerror', (error) => said.push(error.message));
-      await use();
+      await use(null);
       expect(said, 'what the browser complained of').toEqual([]);
     },
     { auto: true },

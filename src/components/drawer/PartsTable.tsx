@@ -1,5 +1,5 @@
 import { ChangeBar } from '#components/ui/ChangeBar.tsx';
-import { DataTable } from '#components/ui/DataTable.tsx';
+import { DataTable, FigureHead } from '#components/ui/DataTable.tsx';
 import { Length } from '#components/ui/Length.tsx';
 import { PartMark } from '#components/ui/PartMark.tsx';
 import { lengthFormat } from '#lib/plan/length-format.ts';
@@ -43,9 +43,9 @@ export function PartsTable({ parts, materials, units }: PartsTableProps) {
               Qty
             </th>
             {['Length', 'Width', 'Thickness'].map((head) => (
-              <th key={head} scope="col" className="is-figure">
-                {head} <span className="data-table__unit">{unit}</span>
-              </th>
+              <FigureHead key={head} unit={unit}>
+                {head}
+              </FigureHead>
             ))}
           </tr>
         </thead>

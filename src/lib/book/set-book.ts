@@ -17,8 +17,6 @@ import { setSteps } from './steps.ts';
 import { drawTitleBlock } from './title-block.ts';
 import type { BookInput, BookPicture } from './types.ts';
 
-export type { BookFonts, BookInput, BookPaper, BookPicture, BookRevision } from './types.ts';
-
 /** Every printable ASCII character and the signs that the book itself sets. */
 const OWN_CHARACTERS = `${Array.from({ length: 95 }, (_, index) => String.fromCharCode(32 + index)).join('')}−×–…’“”°€£¥²³`;
 

@@ -31,9 +31,6 @@ function setHeading(flow: Flow, columns: readonly Column[], x: number): void {
   pen.line(x, flow.y, right, flow.y, 0.7, INK);
 }
 
-/** Height of the heading and the first row: what must stand together under a section's heading. */
-export const TABLE_START = 60;
-
 /** Sets a table. A row is never parted; the heading stands again on every page that the table reaches. */
 export function setTable(
   flow: Flow,

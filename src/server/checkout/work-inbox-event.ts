@@ -2,6 +2,7 @@ import { InboxEvent } from '#db/models/index.ts';
 import { log } from '../log.ts';
 import { payments } from '../payments/client.ts';
 import { settlePaymentAccount } from '../sales/settle-payment-account.ts';
+import type { WebhookEvent } from './webhook-events.ts';
 import { settleFee } from './settle-fee.ts';
 import { settleOrder } from './settle-order.ts';
 import { settleRefunds } from './settle-refunds.ts';
@@ -29,7 +30,7 @@ async function settleDispute(disputeId: string): Promise<void> {
 }
 
 /** What each kind of event makes us ask the payment service about. Others are kept in the inbox and need nothing. */
-const WORK: Record<string, (objectId: string) => Promise<unknown>> = {
+const WORK: Record<WebhookEvent, (objectId: string) => Promise<unknown>> = {
   'checkout.session.completed': settleOrder,
   'checkout.session.async_payment_succeeded': settleOrder,
   'checkout.session.async_payment_failed': settleOrder,
@@ -43,8 +44,7 @@ const WORK: Record<string, (objectId: string) => Promise<unknown>> = {
   'account.updated': settlePaymentAccount,
 };
 
-/** The kinds of event that the webhook endpoint asks for. */
-export const WEBHOOK_EVENTS = Object.keys(WORK);
+const isOurs = (type: string): type is WebhookEvent => Object.hasOwn(WORK, type);
 
 /**
  * Works off one stored event. Whatever the order and number of events, the outcome is what the payment service says at the end.
@@ -54,7 +54,7 @@ export async function workInboxEvent(eventId: string): Promise<void> {
   const event = await InboxEvent.findByPk(eventId);
   if (!event || event.processedAt) return;
   try {
-    await WORK[event.type]?.(event.objectId);
+    if (isOurs(event.type)) await WORK[event.type](event.objectId);
   } catch (error) {
     await event.update({
       attempts: event.attempts + 1,

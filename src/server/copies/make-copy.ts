@@ -1,5 +1,6 @@
 import { Asset, Book, Copy, Imprint, Licence, Plan, Revision } from '#db/models/index.ts';
-import { setBook, type BookPicture } from '#lib/book/set-book.ts';
+import { setBook } from '#lib/book/set-book.ts';
+import type { BookPicture } from '#lib/book/types.ts';
 import { stampBook } from '#lib/book/stamp-book.ts';
 import { resolvePlan } from '#lib/plan/resolve.ts';
 import { log } from '../log.ts';

@@ -34,7 +34,11 @@ export function stateClient(
     // From the right, the first address that is not a proxy of ours.
     address = forwarded.reverse().find((each) => !trustedProxies.includes(each)) ?? peer;
   }
-  for (const name of [...PROXY_HEADERS, ...OWN_HEADERS]) delete request.headers[name];
+  request.headers = Object.fromEntries(
+    Object.entries(request.headers).filter(
+      ([name]) => !PROXY_HEADERS.includes(name) && !OWN_HEADERS.includes(name),
+    ),
+  );
   request.rawHeaders = request.rawHeaders.filter((_, index, raw) => {
     const name = (raw[index - (index % 2)] ?? '').toLowerCase();
     return !PROXY_HEADERS.includes(name) && !OWN_HEADERS.includes(name);

@@ -8,8 +8,3 @@ export function monthBounds(month: string): { from: Date; until: Date } {
   const [year, number] = monthSchema.parse(month).split('-').map(Number) as [number, number];
   return { from: new Date(Date.UTC(year, number - 1, 1)), until: new Date(Date.UTC(year, number, 1)) };
 }
-
-/** The month that an instant falls in, in UTC. */
-export function monthOf(date: Date): string {
-  return date.toISOString().slice(0, 7);
-}

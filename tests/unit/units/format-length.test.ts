@@ -1,7 +1,13 @@
 import fc from 'fast-check';
 import { describe, expect, it } from 'vitest';
 
-import { formatAlike, formatExactLength, formatLength, graduationNm, readsAs } from '#lib/units/format-length.ts';
+import {
+  formatAlike,
+  formatExactLength,
+  formatLength,
+  graduationNm,
+  readsAs,
+} from '#lib/units/format-length.ts';
 import type { LengthFormat } from '#lib/units/format-length.ts';
 import { fromInches, fromMillimetres, roundNm, toInches, toMillimetres } from '#lib/units/length.ts';
 
@@ -49,7 +55,11 @@ describe('printing a length', () => {
       marked: false,
       mark: '',
     });
-    expect(formatLength(17_600_000, { units: 'mm' })).toMatchObject({ whole: 17, numerator: 3, denominator: 5 });
+    expect(formatLength(17_600_000, { units: 'mm' })).toMatchObject({
+      whole: 17,
+      numerator: 3,
+      denominator: 5,
+    });
   });
 
   it('says exactly what was rounded away', () => {
@@ -61,7 +71,9 @@ describe('printing a length', () => {
   });
 
   const formats = fc.oneof(
-    fc.constantFrom(2, 4, 8, 16, 32, 64).map((denominator): LengthFormat => ({ units: 'in', denominator: denominator as 2 })),
+    fc
+      .constantFrom(2, 4, 8, 16, 32, 64)
+      .map((denominator): LengthFormat => ({ units: 'in', denominator: denominator as 2 })),
     fc.constantFrom(1, 0.5, 0.1).map((decimals): LengthFormat => ({ units: 'mm', decimals: decimals as 1 })),
   );
   const lengths = fc.integer({ min: -100_000_000_000, max: 100_000_000_000 });
