@@ -1,0 +1,100 @@
+/**
+ * Every page and endpoint of the site, and what each kind of person meets there. `open`: anybody; `own`: signed in (what is shown is one's own);
+ * the others name the role that is needed. A new route must be put here, or a test fails.
+ */
+export type Need = 'open' | 'own' | 'imprint' | 'writer' | 'owner' | 'books' | 'staff' | 'holder' | 'proof';
+
+export interface Route {
+  /** File under src/pages. */
+  file: string;
+  need: Need;
+  /** Methods that the file answers. */
+  methods: readonly ('GET' | 'POST' | 'PUT' | 'DELETE')[];
+}
+
+const page = (file: string, need: Need): Route => ({ file, need, methods: ['GET'] });
+const post = (file: string, need: Need): Route => ({ file, need, methods: ['POST'] });
+
+export const routes: readonly Route[] = [
+  page('403.astro', 'open'),
+  page('404.astro', 'open'),
+  page('500.astro', 'open'),
+  page('index.astro', 'open'),
+  page('plans/index.astro', 'open'),
+  page('plans/[slug].astro', 'open'),
+  page('imprints/[slug].astro', 'open'),
+  page('guides/index.astro', 'open'),
+  page('guides/[...slug].astro', 'open'),
+  page('pictures/[sha256].ts', 'open'),
+  page('sign-in.astro', 'open'),
+  page('sign-up.astro', 'open'),
+  page('forgot-password.astro', 'open'),
+  page('reset-password.astro', 'open'),
+  page('verify-email.astro', 'open'),
+  page('invitations/[token].astro', 'open'),
+  page('account.astro', 'own'),
+  page('orders/index.astro', 'own'),
+  page('orders/[orderId].astro', 'own'),
+  page('drawer/index.astro', 'own'),
+  page('drawer/[licenceId].astro', 'holder'),
+  page('office/index.astro', 'own'),
+  page('office/apply.astro', 'own'),
+  page('office/[imprint]/index.astro', 'imprint'),
+  page('office/[imprint]/people.astro', 'owner'),
+  page('office/plans/[planId]/index.astro', 'writer'),
+  page('office/plans/[planId]/prices.astro', 'writer'),
+  page('office/plans/[planId]/publish.astro', 'writer'),
+  page('proofs/[planId].astro', 'proof'),
+  page('sales/[imprint]/index.astro', 'books'),
+  page('sales/[imprint]/payouts.astro', 'books'),
+  page('sales/[imprint]/sources.astro', 'writer'),
+  page('sales/[imprint]/codes.astro', 'writer'),
+  page('sales/[imprint]/orders/[orderId].astro', 'books'),
+  page('staff/index.astro', 'staff'),
+  post('api/webhooks/payments.ts', 'open'),
+  post('api/account/sign-in.ts', 'open'),
+  post('api/account/sign-up.ts', 'open'),
+  post('api/account/forgot-password.ts', 'open'),
+  post('api/account/reset-password.ts', 'open'),
+  post('api/account/verify-email.ts', 'open'),
+  post('api/account/request-verification.ts', 'open'),
+  post('api/account/sign-out.ts', 'own'),
+  post('api/account/email.ts', 'own'),
+  post('api/account/erase.ts', 'own'),
+  post('api/account/password.ts', 'own'),
+  post('api/account/profile.ts', 'own'),
+  post('api/account/sessions.ts', 'own'),
+  page('api/account/export.ts', 'own'),
+  post('api/account/invitations/[token].ts', 'own'),
+  post('api/office/plans/[planId]/withdraw-proof.ts', 'writer'),
+  post('api/checkout.ts', 'own'),
+  post('api/plans/[slug]/fit.ts', 'open'),
+  post('api/plans/[slug]/visits.ts', 'open'),
+  post('api/plans/[slug]/questions.ts', 'own'),
+  post('api/questions/[questionId].ts', 'writer'),
+  post('api/licences/[licenceId]/copies.ts', 'holder'),
+  post('api/licences/[licenceId]/fits.ts', 'holder'),
+  post('api/licences/[licenceId]/build.ts', 'holder'),
+  page('api/copies/[copyId]/index.ts', 'holder'),
+  page('api/copies/[copyId]/download.ts', 'holder'),
+  { file: 'api/fits/[fitId].ts', need: 'own', methods: ['DELETE'] },
+  post('api/office/imprints.ts', 'own'),
+  post('api/office/[imprint]/plans.ts', 'writer'),
+  post('api/office/[imprint]/people.ts', 'owner'),
+  post('api/office/[imprint]/about.ts', 'owner'),
+  { file: 'api/office/plans/[planId]/draft.ts', need: 'writer', methods: ['PUT', 'POST'] },
+  { file: 'api/office/plans/[planId]/proof.ts', need: 'writer', methods: ['GET', 'POST'] },
+  post('api/office/plans/[planId]/prices.ts', 'owner'),
+  post('api/office/plans/[planId]/publish.ts', 'writer'),
+  post('api/office/plans/[planId]/pictures.ts', 'writer'),
+  post('api/office/plans/[planId]/proof-builders.ts', 'writer'),
+  post('api/proofs/[planId].ts', 'proof'),
+  post('api/sales/[imprint]/refund.ts', 'owner'),
+  page('api/sales/[imprint]/statement.ts', 'books'),
+  post('api/sales/[imprint]/sources.ts', 'writer'),
+  post('api/sales/[imprint]/codes.ts', 'writer'),
+  post('api/sales/[imprint]/payouts.ts', 'owner'),
+  post('api/staff/imprints.ts', 'staff'),
+  post('api/staff/plans.ts', 'staff'),
+  post('api/staff/refunds.ts', 'staff'),
+];
