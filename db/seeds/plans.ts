@@ -1,6 +1,6 @@
 import { readdir, readFile } from 'node:fs/promises';
 import path from 'node:path';
-import type { Imprint} from '#db/models/index.ts';
+import type { Imprint } from '#db/models/index.ts';
 import { Correction, Plan, Revision } from '#db/models/index.ts';
 import type { SignedInUser } from '#server/accounts/actor.ts';
 import { createPlan } from '#server/publishing/create-plan.ts';

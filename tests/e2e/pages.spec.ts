@@ -78,7 +78,10 @@ for (const { mailbox, addresses } of ROOMS) {
       await page.goto('/drawer');
       await judge(
         page,
-        (await page.getByRole('link', { name: 'Boot bench for a narrow hall' }).first().getAttribute('href')) ?? '',
+        (await page
+          .getByRole('link', { name: 'Boot bench for a narrow hall' })
+          .first()
+          .getAttribute('href')) ?? '',
       );
     }
     if (mailbox === 'wenna') {

@@ -25,7 +25,9 @@ function secretsOf(slug: string): { figures: string[]; words: string[]; title: s
     ...Object.values(resolved.overall ?? {}),
     ...resolved.materials.flatMap((material) => [material.nominal, ...material.sizes.flat()]),
   ]);
-  const secretLengths = [...new Set(lengths)].filter((nm) => nm > 50_000_000 && nm % 5_000_000 !== 0 && !known.has(nm));
+  const secretLengths = [...new Set(lengths)].filter(
+    (nm) => nm > 50_000_000 && nm % 5_000_000 !== 0 && !known.has(nm),
+  );
   const figures = secretLengths
     .flatMap((nm) => [
       String(nm),
@@ -39,7 +41,11 @@ function secretsOf(slug: string): { figures: string[]; words: string[]; title: s
   const steps = resolved.steps.map((step) => plainText(step.body).trim().slice(0, 60));
   const names = [...source.matchAll(/<Part mark="[^"]+" name="([^"]{8,})"/g)].map((match) => match[1] ?? '');
   const isHidden = (text: string) => text.length >= MIN_LENGTH && !open.includes(text);
-  return { figures: figures.filter(isHidden), words: [...formulas, ...steps, ...names].filter(isHidden), title: resolved.title };
+  return {
+    figures: figures.filter(isHidden),
+    words: [...formulas, ...steps, ...names].filter(isHidden),
+    title: resolved.title,
+  };
 }
 
 /** The text of an answer with its escapes undone, so that nothing hides behind `&quot;` or `\\u0022`. */
@@ -105,7 +111,8 @@ test('a visitor finds no part size, position, formula, step text or layout of a 
     for (const [address, body] of answers) {
       // A figure may stand on the page of another plan by chance; words may stand nowhere.
       const looked = body.includes(title) && address.includes('/plans/') ? [...figures, ...words] : words;
-      for (const secret of looked) expect(body.includes(secret), `“${secret}” of ${slug} on ${address}`).toBe(false);
+      for (const secret of looked)
+        expect(body.includes(secret), `“${secret}” of ${slug} on ${address}`).toBe(false);
     }
   }
 });

@@ -110,7 +110,9 @@ for (const route of routes.filter((each) => each.methods.includes('GET') && !ski
       const status = answer?.status() ?? 0;
       // An order is its buyer's, and how far a copy is its holder's; staff may look at both.
       const isLookedAfter = ['orders/[orderId].astro', 'api/copies/[copyId]/index.ts'].includes(route.file);
-      const isAllowed = isLookedAfter ? ['buyer', 'staff'].includes(person) : allowed[route.need].includes(person);
+      const isAllowed = isLookedAfter
+        ? ['buyer', 'staff'].includes(person)
+        : allowed[route.need].includes(person);
       if (isAllowed) expect([200, 303], `${person} on ${route.file}`).toContain(status);
       else expect([303, 401, 403, 404], `${person} on ${route.file}`).toContain(status);
       if (!isAllowed && status === 303) expect(answer?.headers()['location']).toContain('/sign-in');
