@@ -5,6 +5,7 @@ const env = { TZ: 'UTC', LANG: 'en_GB.UTF-8', NODE_NO_WARNINGS: '1' };
 
 export default defineConfig({
   test: {
+    maxWorkers: 2,
     projects: [
       { test: { name: 'unit', include: ['tests/unit/**/*.test.ts'], environment: 'node', env } },
       { test: { name: 'outside', include: ['tests/outside/**/*.test.ts'], environment: 'node', env } },
@@ -22,7 +23,6 @@ export default defineConfig({
           setupFiles: ['tests/service/use-services.ts'],
           testTimeout: 60_000,
           hookTimeout: 60_000,
-          maxWorkers: 2,
         },
       },
     ],
