@@ -42,6 +42,8 @@ export default defineConfig({
       ],
     },
   },
+  // Highlighted code carries inline styles, which the policy of our pages forbids.
+  markdown: { syntaxHighlight: false },
   devToolbar: { enabled: false },
   vite: {
     plugins: [tailwindcss()],

@@ -28,13 +28,16 @@ function secretsOf(slug: string): { figures: string[]; words: string[]; title: s
   const secretLengths = [...new Set(lengths)].filter(
     (nm) => nm > 50_000_000 && nm % 5_000_000 !== 0 && !known.has(nm),
   );
+  const print = (nm: number) => [
+    String(nm),
+    formatLength(nm, { units: 'mm', decimals: 0.1 }).text,
+    formatLength(nm, { units: 'in', denominator: 32 }).text,
+  ];
+  // A part that measures what the whole does gives nothing away.
+  const openTexts = new Set([...known].flatMap(print));
   const figures = secretLengths
-    .flatMap((nm) => [
-      String(nm),
-      formatLength(nm, { units: 'mm', decimals: 0.1 }).text,
-      formatLength(nm, { units: 'in', denominator: 32 }).text,
-    ])
-    .filter((text) => /\d{8,}|\d+ \d+\/\d+"|\d{3,}\.\d/.test(text));
+    .flatMap(print)
+    .filter((text) => !openTexts.has(text) && /\d{8,}|\d+ \d+\/\d+"|\d{3,}\.\d/.test(text));
   const formulas = [...source.matchAll(/(?:length|width|value|at|every|that)=\{([^}]{12,})\}/g)].map(
     (match) => match[1] ?? '',
   );
