@@ -38,9 +38,10 @@ function secretsOf(slug: string): { figures: string[]; words: string[]; title: s
   const figures = secretLengths
     .flatMap(print)
     .filter((text) => !openTexts.has(text) && /\d{8,}|\d+ \d+\/\d+"|\d{3,}\.\d/.test(text));
-  const formulas = [...source.matchAll(/(?:length|width|value|at|every|that)=\{([^}]{12,})\}/g)].map(
-    (match) => match[1] ?? '',
-  );
+  // The name of a thickness alone is a word of the language and no formula.
+  const formulas = [...source.matchAll(/(?:length|width|value|at|every|that)=\{([^}]{12,})\}/g)]
+    .map((match) => match[1] ?? '')
+    .filter((text) => /[-+*/?<>]/.test(text));
   const steps = resolved.steps.map((step) => plainText(step.body).trim().slice(0, 60));
   const names = [...source.matchAll(/<Part mark="[^"]+" name="([^"]{8,})"/g)].map((match) => match[1] ?? '');
   const isHidden = (text: string) => text.length >= MIN_LENGTH && !open.includes(text);
